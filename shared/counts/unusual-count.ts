@@ -47,7 +47,7 @@ const inside = 0.995
 const farEnough = 10
 
 /** Factors that count as a slip by ten. */
-const slip = { from: 4, to: 25 }
+const slip = { from: 5, to: 25 }
 
 function useQuantile(p: number, mean: number, variance: number): number {
   if (mean <= 0) return 0

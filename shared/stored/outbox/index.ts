@@ -1,10 +1,6 @@
 import type { z } from 'zod'
-import {
-  OutboxEntry as Current,
-  OutboxReply as Reply,
-  type OutboxLabel as Label,
-  type OutboxState as State,
-} from './v1.ts'
+import type { OutboxReply as Reply } from './v1.ts'
+import { OutboxEntry as Current, type OutboxLabel as Label, type OutboxState as State } from './v1.ts'
 
 export const OutboxEntry = Current
 export type OutboxEntry = z.infer<typeof Current>
