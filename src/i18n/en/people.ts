@@ -1,0 +1,50 @@
+import { counted } from './format.ts'
+
+export const peopleWords = {
+  signIn: {
+    title: 'Sign in',
+    lead: 'Count the shelf, keep enough.',
+    who: 'E-mail or staff code',
+    password: 'Password',
+    submit: 'Sign in',
+    forgot: 'Forgotten password',
+    offline: 'Signing in for the first time needs a connection.',
+    waiting: (count: number, name: string): string =>
+      `${counted(count, 'count')} by ${name} on this phone ${count === 1 ? 'is' : 'are'} waiting. Only ${name} can send ${count === 1 ? 'it' : 'them'}.`,
+    again: (name: string): string => `Signed in before as ${name}.`,
+  },
+  reset: {
+    title: 'New password',
+    askLead: 'Give your e-mail address. If it is known here, a link is sent to it.',
+    email: 'E-mail',
+    ask: 'Send the link',
+    asked: 'If the address is known, a link is on its way. It works once, for a short time.',
+    setLead: 'Choose a new password. Every other session ends.',
+    newPassword: 'New password',
+    newHint: 'At least 8 characters. A few words are easier than symbols.',
+    set: 'Set the password',
+    done: 'The password is set. Sign in with it.',
+    toSignIn: 'To sign-in',
+  },
+  me: {
+    title: 'Me',
+    device: 'This phone or computer',
+    theme: 'Colours',
+    themes: { auto: 'As the phone', light: 'Day', dark: 'Night' },
+    leftHand: 'Left hand',
+    leftHandHint: 'Mirrors the keypad and the buttons at the bottom.',
+    largeKeys: 'Large keys',
+    largeKeysHint: 'Keypad keys 88 pixels high, for gloves.',
+    passwordTitle: 'Change password',
+    current: 'Present password',
+    change: 'Change password',
+    changed: 'Password changed. Other sessions have ended.',
+    rooms: (names: string[]): string => (names.length ? names.join(', ') : 'Every room'),
+    signOut: 'Sign out',
+    unsentTitle: (count: number): string => `${counted(count, 'count')} not in the record yet`,
+    unsent: (count: number): string =>
+      `${count === 1 ? 'It stays' : 'They stay'} on this phone and ${count === 1 ? 'is' : 'are'} sent when you sign in again here. Nobody else can send or change ${count === 1 ? 'it' : 'them'}.`,
+    stay: 'Stay and send',
+    signOutAnyway: 'Sign out anyway',
+  },
+} as const

@@ -1,0 +1,45 @@
+import type { RouteRecordRaw } from 'vue-router'
+import MainLayout from '#src/layouts/MainLayout.vue'
+import { countRoutes } from './count-routes.ts'
+
+export const routes: RouteRecordRaw[] = [
+  {
+    path: '/sign-in',
+    name: 'sign-in',
+    component: () => import('#src/pages/people/SignInPage.vue'),
+    meta: { open: true },
+  },
+  {
+    path: '/password-reset/:token?',
+    name: 'password-reset',
+    component: () => import('#src/pages/people/PasswordResetPage.vue'),
+    props: true,
+    meta: { open: true },
+  },
+  {
+    path: '/',
+    component: MainLayout,
+    children: [
+      {
+        path: '',
+        name: 'today',
+        component: () => import('#src/pages/today/TodayPage.vue'),
+        meta: { place: 'today', offline: true },
+      },
+      ...countRoutes,
+      {
+        path: 'me',
+        name: 'me',
+        component: () => import('#src/pages/people/MePage.vue'),
+        meta: { place: 'me', offline: true },
+      },
+      {
+        path: 'not-yours',
+        name: 'not-yours',
+        component: () => import('#src/pages/people/NotYoursPage.vue'),
+        meta: { offline: true },
+      },
+      { path: ':rest(.*)*', name: 'not-found', component: () => import('#src/pages/people/NotFoundPage.vue') },
+    ],
+  },
+]
