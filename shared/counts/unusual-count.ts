@@ -1,12 +1,11 @@
 import { negativeBinomialQuantile } from '#shared/stats/negative-binomial-quantile.ts'
 import { poissonQuantile } from '#shared/stats/poisson-quantile.ts'
 
-/** An order line that may have come without being entered. Units of use. */
+/** An order line that may have come without being entered; `units` of use not yet put away. */
 export interface OpenLine {
   orderLineId: string
   orderNumber: string
   units: number
-  putAway: number
   expectedOn: string | null
 }
 
@@ -37,7 +36,7 @@ export type CountQuestion =
   | { kind: 'first-zero'; keep: 0 }
   | { kind: 'tenfold'; keep: number; instead: number; usual: UsualRange | null }
   | { kind: 'over-capacity'; keep: number; capacity: number; usual: UsualRange | null }
-  | { kind: 'rise'; keep: number; expected: number; rise: number; lines: (OpenLine & { open: number })[] }
+  | { kind: 'rise'; keep: number; expected: number; rise: number; lines: OpenLine[] }
   | { kind: 'outside-usual'; keep: number; usual: UsualRange }
 
 /** Two-sided share of counts that lie inside the usual range. */
@@ -107,9 +106,7 @@ export function unusualCount(situation: CountSituation): CountQuestion | null {
   const expected = Math.max(0, (last?.quantity ?? 0) + recordedSince)
   const rise = quantity - expected
   const rises = last !== null && rise > packSize
-  const lines = situation.openLines
-    .map((line) => ({ ...line, open: line.units - line.putAway }))
-    .filter((line) => line.open > 0)
+  const lines = situation.openLines.filter((line) => line.units > 0)
   const asked: CountQuestion = { kind: 'rise', keep: quantity, expected, rise, lines }
   if (rises && lines.length > 0) return asked
   if (capacity !== null && quantity > capacity) return { kind: 'over-capacity', keep: quantity, capacity, usual }

@@ -63,7 +63,10 @@ describe('wedge', () => {
   })
 
   it('passes over the Shift keys between the letters of a scan', () => {
-    press([...'U7K2M4Q9'].flatMap((letter) => (/[A-Z]/.test(letter) ? ['Shift', letter] : [letter])), 4)
+    press(
+      [...'U7K2M4Q9'].flatMap((letter) => (/[A-Z]/.test(letter) ? ['Shift', letter] : [letter])),
+      4,
+    )
     press(['Enter'], 4)
     expect(scans).toEqual(['U7K2M4Q9'])
     expect(typed).toEqual([])

@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest'
 import { unusualCount, usualRange, type CountSituation } from '#shared/counts/unusual-count.ts'
 
-const line = { orderLineId: '7', orderNumber: 'T-0031', units: 50, putAway: 0, expectedOn: '2026-12-03' }
+const line = { orderLineId: '7', orderNumber: 'T-0031', units: 50, expectedOn: '2026-12-03' }
 const place = (quantity: number, more: Partial<CountSituation> = {}): CountSituation => ({
   quantity,
   last: { quantity: 14, daysAgo: 2 },
@@ -69,12 +69,12 @@ describe('unusualCount', () => {
 
   it('asks about a rise by more than a pack, with what is still open of each order line', () => {
     expect(unusualCount(place(39))).toBeNull()
-    expect(unusualCount(place(64, { openLines: [line, { ...line, orderLineId: '8', putAway: 50 }] }))).toMatchObject({
+    expect(unusualCount(place(64, { openLines: [line, { ...line, orderLineId: '8', units: 0 }] }))).toMatchObject({
       kind: 'rise',
       keep: 64,
       expected: 14,
       rise: 50,
-      lines: [{ orderLineId: '7', open: 50 }],
+      lines: [{ orderLineId: '7', units: 50 }],
     })
     expect(unusualCount(place(64, { recordedSince: 50 }))).toBeNull()
   })
