@@ -10,7 +10,7 @@ module.exports = {
     rule(
       'sql-in-repositories',
       { path: '^server/', pathNot: '(\\.(repository|tables)\\.ts$|^server/(db/|http/|main\\.ts$))' },
-      { path: '(^node_modules/drizzle-orm|^server/db/|\\.tables\\.ts$)', dependencyTypesNot: ['type-only'] },
+      { path: '(^node_modules/drizzle-orm|^server/db/|\\.tables\\.ts$)', pathNot: '^server/db/(errors|transaction)\\.ts$', dependencyTypesNot: ['type-only'] },
     ),
     rule(
       'http-in-routes',

@@ -72,6 +72,9 @@ export const Operation = z
 export type Operation = z.infer<typeof Operation>
 export type OperationType = Operation['type']
 
+/** Most items in one batch. */
+export const batchLimit = 100
+
 export const syncStatuses = ['accepted', 'duplicate', 'accepted_with_conflict', 'rejected', 'retry'] as const
 export const SyncResult = z.object({
   opId: z.string(),
@@ -88,8 +91,8 @@ export const SyncBody = z.strictObject({
   userId: Id,
   appVersion: z.string().max(40),
   sentAt: Instant,
-  /** Judged one by one: a malformed item is refused alone. */
-  items: z.array(z.record(z.string(), z.unknown())).max(100),
+  /** At most 100 (more is 413). Judged one by one: a malformed item is refused alone. */
+  items: z.array(z.record(z.string(), z.unknown())),
 })
 export const SyncAnswer = z.object({
   serverTime: Instant,

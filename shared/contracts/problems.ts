@@ -23,6 +23,11 @@ export const problemTable = {
     detail: 'Send at most 100 entries and 64 KB at a time.',
   },
   'cross-site': { status: 403, title: 'Refused', detail: 'This request came from another site.' },
+  'in-another-draft': {
+    status: 409,
+    title: 'In another draft',
+    detail: 'Another draft holds some of these places already. Open that draft, or leave them out.',
+  },
   'in-use': {
     status: 409,
     title: 'Still in use',

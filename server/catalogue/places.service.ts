@@ -1,0 +1,267 @@
+import type { Room, Supplier, Ward } from '#shared/contracts/catalogue.ts'
+import { fieldProblem, problem } from '#shared/contracts/problems.ts'
+import { audit } from '../audit/audit.service.ts'
+import type { Clock } from '../clock.ts'
+import { groupBy, momentOf, viewBins } from '../counts/bin-view.service.ts'
+import { startRoom, touchBins } from '../counts/counts.service.ts'
+import type { Reader, Tx } from '../db/client.ts'
+import { isDuplicate } from '../db/errors.ts'
+import type { Actor } from '../http/context.ts'
+import { readHospital } from './hospital.service.ts'
+import { liveBinsOfSupplier } from './items.repository.ts'
+import * as repo from './places.repository.ts'
+
+export interface ListQuery {
+  page: number
+  pageSize: number
+  q?: string
+  retired: 'yes' | 'no'
+}
+
+export const listFilter = (query: ListQuery): repo.ListFilter => ({
+  q: query.q || undefined,
+  retired: query.retired === 'yes',
+  offset: (query.page - 1) * query.pageSize,
+  limit: query.pageSize,
+})
+
+export const listAnswer = <T>(items: T[], total: number, query: ListQuery) => ({
+  items,
+  total,
+  page: query.page,
+  pageSize: query.pageSize,
+})
+
+/** Only what was given; `retired` becomes its moment. */
+export function changeOf<T extends { retired?: boolean }>(
+  input: T,
+  now: Date,
+): Omit<T, 'retired'> & { retiredAt?: Date | null } {
+  const { retired, ...rest } = input
+  const set = Object.fromEntries(Object.entries(rest).filter(([, v]) => v !== undefined)) as Omit<T, 'retired'>
+  return retired === undefined ? set : { ...set, retiredAt: retired ? now : null }
+}
+
+/** A code somebody else has: said at its field. */
+export function codeTakenProblem(error: unknown): never {
+  if (isDuplicate(error)) throw fieldProblem('/code', 'another one has this code')
+  throw error
+}
+
+// Wards -----------------------------------------------------------------------------------------------------------
+const toWard = (row: repo.WardRow): Ward => ({
+  id: String(row.id),
+  code: row.code,
+  name: row.name,
+  kind: row.kind,
+  site: row.site,
+  retired: row.retiredAt !== null,
+})
+
+export async function listWards(db: Reader, query: ListQuery) {
+  const { rows, total } = await repo.listWardRows(db, listFilter(query))
+  return listAnswer(rows.map(toWard), total, query)
+}
+
+export async function createWard(
+  tx: Tx,
+  clock: Clock,
+  actorId: number,
+  input: Omit<Ward, 'id' | 'retired'>,
+): Promise<Ward> {
+  const id = await repo.insertWard(tx, { ...input, retiredAt: null }).catch(codeTakenProblem)
+  await audit(tx, {
+    at: clock.now(),
+    userId: actorId,
+    action: 'ward-added',
+    subject: 'ward',
+    subjectId: id,
+    after: input,
+  })
+  return toWard((await repo.findWard(tx, id))!)
+}
+
+export async function updateWard(
+  tx: Tx,
+  clock: Clock,
+  actor: Actor,
+  id: number,
+  input: Partial<Omit<Ward, 'id'>>,
+): Promise<Ward> {
+  const before = await repo.findWard(tx, id)
+  if (!before) throw problem('not-found')
+  if (input.retired && (await repo.liveRoomsOfWard(tx, id)).length) {
+    throw problem('in-use', 'This ward still has rooms. Retire or move them first.')
+  }
+  await repo.updateWardRow(tx, id, changeOf(input, clock.now())).catch(codeTakenProblem)
+  await audit(tx, {
+    at: clock.now(),
+    userId: actor.id,
+    action: 'ward-changed',
+    subject: 'ward',
+    subjectId: id,
+    before,
+    after: input,
+  })
+  return toWard((await repo.findWard(tx, id))!)
+}
+
+// Rooms -----------------------------------------------------------------------------------------------------------
+const toRoom = (row: repo.RoomRow, bins: number, below: number): Room => ({
+  id: String(row.id),
+  code: row.code,
+  name: row.name,
+  wardId: String(row.wardId),
+  wardName: row.wardName,
+  wardKind: row.wardKind,
+  countEveryDays: row.countEveryDays,
+  mode: row.mode,
+  bins,
+  below,
+  retired: row.retiredAt !== null,
+})
+
+export async function listRooms(db: Reader, clock: Clock, actor: Actor, query: ListQuery) {
+  const { rows, total } = await repo.listRoomRows(db, { ...listFilter(query), roomIds: actor.roomIds })
+  const { timeZone } = await readHospital(db)
+  const views = await viewBins(db, momentOf(clock, timeZone), { roomIds: rows.map((r) => r.id), retired: false })
+  const byRoom = groupBy(views, (v) => v.row.roomId)
+  const items = rows.map((row) => {
+    const own = byRoom.get(row.id) ?? []
+    return toRoom(row, own.length, own.filter((v) => v.bin.states.includes('below')).length)
+  })
+  return listAnswer(items, total, query)
+}
+
+async function oneRoom(db: Reader, clock: Clock, id: number): Promise<Room> {
+  const row = await repo.findRoom(db, id)
+  if (!row) throw problem('not-found')
+  const { timeZone } = await readHospital(db)
+  const views = await viewBins(db, momentOf(clock, timeZone), { roomIds: null, roomId: id, retired: false })
+  return toRoom(row, views.length, views.filter((v) => v.bin.states.includes('below')).length)
+}
+
+interface RoomFields {
+  code: string
+  name: string
+  wardId: string
+  countEveryDays: number
+  mode: Room['mode']
+}
+
+async function checkWard(db: Reader, wardId: string): Promise<number> {
+  const ward = await repo.findWard(db, Number(wardId))
+  if (!ward || ward.retiredAt) throw fieldProblem('/wardId', 'choose a ward that is in use')
+  return ward.id
+}
+
+export async function createRoom(tx: Tx, clock: Clock, actorId: number, input: RoomFields): Promise<Room> {
+  const wardId = await checkWard(tx, input.wardId)
+  const id = await repo.insertRoom(tx, { ...input, wardId, retiredAt: null }).catch(codeTakenProblem)
+  await startRoom(tx, id)
+  await audit(tx, {
+    at: clock.now(),
+    userId: actorId,
+    action: 'room-added',
+    subject: 'room',
+    subjectId: id,
+    after: input,
+  })
+  return oneRoom(tx, clock, id)
+}
+
+export async function updateRoom(
+  tx: Tx,
+  clock: Clock,
+  actor: Actor,
+  id: number,
+  input: Partial<RoomFields> & { retired?: boolean },
+): Promise<Room> {
+  const before = await repo.findRoom(tx, id)
+  if (!before) throw problem('not-found')
+  const bins = await repo.liveBinsOfRoom(tx, id)
+  if (input.retired && bins.length) throw problem('in-use', 'This room still has places. Retire or move them first.')
+  const { wardId, ...rest } = input
+  const set = {
+    ...changeOf(rest, clock.now()),
+    ...(wardId === undefined ? {} : { wardId: await checkWard(tx, wardId) }),
+  }
+  await repo.updateRoomRow(tx, id, set).catch(codeTakenProblem)
+  await audit(tx, {
+    at: clock.now(),
+    userId: actor.id,
+    action: 'room-changed',
+    subject: 'room',
+    subjectId: id,
+    before,
+    after: input,
+  })
+  const cause =
+    input.mode !== undefined && input.mode !== before.mode
+      ? 'mode'
+      : input.countEveryDays !== undefined
+        ? 'rhythm'
+        : null
+  await touchBins(tx, clock.now(), bins, cause)
+  return oneRoom(tx, clock, id)
+}
+
+// Suppliers -------------------------------------------------------------------------------------------------------
+const toSupplier = ({ retiredAt, id, ...row }: repo.SupplierRow): Supplier => ({
+  ...row,
+  id: String(id),
+  retired: retiredAt !== null,
+})
+
+export async function listSuppliers(db: Reader, query: ListQuery) {
+  const { rows, total } = await repo.listSupplierRows(db, listFilter(query))
+  return listAnswer(rows.map(toSupplier), total, query)
+}
+
+export async function createSupplier(
+  tx: Tx,
+  clock: Clock,
+  actorId: number,
+  input: Omit<Supplier, 'id' | 'retired'>,
+): Promise<Supplier> {
+  const id = await repo.insertSupplier(tx, { ...input, retiredAt: null }).catch(codeTakenProblem)
+  await audit(tx, {
+    at: clock.now(),
+    userId: actorId,
+    action: 'supplier-added',
+    subject: 'supplier',
+    subjectId: id,
+    after: input,
+  })
+  return toSupplier((await repo.findSupplier(tx, id))!)
+}
+
+export async function updateSupplier(
+  tx: Tx,
+  clock: Clock,
+  actor: Actor,
+  id: number,
+  input: Partial<Omit<Supplier, 'id'>>,
+): Promise<Supplier> {
+  const before = await repo.findSupplier(tx, id)
+  if (!before) throw problem('not-found')
+  const bins = await liveBinsOfSupplier(tx, id)
+  if (input.retired && bins.length)
+    throw problem('in-use', 'Items in use still come from this supplier. Give them another one first.')
+  await repo.updateSupplierRow(tx, id, changeOf(input, clock.now())).catch(codeTakenProblem)
+  await audit(tx, {
+    at: clock.now(),
+    userId: actor.id,
+    action: 'supplier-changed',
+    subject: 'supplier',
+    subjectId: id,
+    before,
+    after: input,
+  })
+  await touchBins(tx, clock.now(), bins, 'calendar')
+  return toSupplier((await repo.findSupplier(tx, id))!)
+}
+
+/** One supplier as stored, for those who compute calendars or send orders. */
+export const supplierRow = repo.findSupplier
+export const roomRow = repo.findRoom

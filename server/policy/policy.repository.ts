@@ -1,0 +1,158 @@
+import { and, asc, desc, eq, gt, inArray, sql } from 'drizzle-orm'
+import { items, supplyAgreements, suppliers } from '../catalogue/catalogue.tables.ts'
+import type { Db, Reader, Tx } from '../db/client.ts'
+import { demandIntervals, policies, policyRuns } from './policy.tables.ts'
+
+export type PolicyRow = typeof policies.$inferSelect
+export type IntervalRow = typeof demandIntervals.$inferSelect
+export type NewInterval = Omit<IntervalRow, 'id'>
+
+export async function findCurrent(db: Reader, binId: number): Promise<PolicyRow | null> {
+  const [row] = await db
+    .select()
+    .from(policies)
+    .where(and(eq(policies.binId, binId), eq(policies.isCurrent, true)))
+  return row ?? null
+}
+
+export async function listCurrent(db: Reader): Promise<PolicyRow[]> {
+  return db.select().from(policies).where(eq(policies.isCurrent, true)).orderBy(asc(policies.binId))
+}
+
+export async function insertPolicy(tx: Tx, row: typeof policies.$inferInsert): Promise<void> {
+  await tx
+    .update(policies)
+    .set({ isCurrent: false })
+    .where(and(eq(policies.binId, row.binId), eq(policies.isCurrent, true)))
+  await tx.insert(policies).values(row)
+}
+
+export async function updatePolicy(tx: Tx, id: number, set: Partial<PolicyRow>): Promise<void> {
+  await tx.update(policies).set(set).where(eq(policies.id, id))
+}
+
+export async function retirePolicies(tx: Tx, binId: number): Promise<void> {
+  await tx
+    .update(policies)
+    .set({ isCurrent: false })
+    .where(and(eq(policies.binId, binId), eq(policies.isCurrent, true)))
+}
+
+/** How the figures in force moved, newest first. */
+export async function listHistory(db: Reader, binId: number, limit: number) {
+  return db
+    .select({
+      id: policies.id,
+      reorderPoint: policies.reorderPoint,
+      parLevel: policies.parLevel,
+      target: policies.target,
+      targetSource: policies.targetSource,
+      method: policies.method,
+      mode: policies.mode,
+      cause: policies.cause,
+      inForceSince: policies.inForceSince,
+      createdAt: policies.createdAt,
+    })
+    .from(policies)
+    .where(eq(policies.binId, binId))
+    .orderBy(desc(policies.createdAt), desc(policies.id))
+    .limit(limit)
+}
+
+/** Rows written since a moment, with the figure each replaced; oldest first. */
+export async function listMovedSince(db: Reader, since: Date) {
+  return db
+    .select({
+      id: policies.id,
+      binId: policies.binId,
+      reorderPoint: policies.reorderPoint,
+      cause: policies.cause,
+      at: policies.inForceSince,
+      createdAt: policies.createdAt,
+    })
+    .from(policies)
+    .where(gt(policies.createdAt, since))
+    .orderBy(asc(policies.createdAt), asc(policies.id))
+}
+
+/** The figure in force before a moment, per bin. */
+export async function listPointsBefore(db: Reader, binIds: number[], before: Date) {
+  if (binIds.length === 0) return []
+  const newest = db
+    .select({ id: sql<number>`max(${policies.id})`.as('id') })
+    .from(policies)
+    .where(and(inArray(policies.binId, binIds), sql`${policies.createdAt} <= ${before}`))
+    .groupBy(policies.binId)
+    .as('newest')
+  return db
+    .select({ binId: policies.binId, reorderPoint: policies.reorderPoint })
+    .from(policies)
+    .innerJoin(newest, eq(newest.id, policies.id))
+}
+
+// Intervals -------------------------------------------------------------------------------------------------------
+export async function listIntervals(db: Reader, binId: number): Promise<IntervalRow[]> {
+  return db
+    .select()
+    .from(demandIntervals)
+    .where(eq(demandIntervals.binId, binId))
+    .orderBy(asc(demandIntervals.closedAt), asc(demandIntervals.id))
+}
+
+export async function replaceIntervals(tx: Tx, stale: number[], fresh: NewInterval[]): Promise<void> {
+  if (stale.length) await tx.delete(demandIntervals).where(inArray(demandIntervals.id, stale))
+  for (let i = 0; i < fresh.length; i += 500) await tx.insert(demandIntervals).values(fresh.slice(i, i + 500))
+}
+
+/** Per bin: intervals, their days, and how many closed on an empty shelf. */
+export async function countIntervals(db: Reader, binIds: number[]) {
+  if (binIds.length === 0) return []
+  return db
+    .select({
+      binId: demandIntervals.binId,
+      intervals: sql<number>`count(*)`.mapWith(Number),
+      days: sql<number>`coalesce(sum(${demandIntervals.days}), 0)`.mapWith(Number),
+      foundEmpty: sql<number>`coalesce(sum(${demandIntervals.isCensored}), 0)`.mapWith(Number),
+    })
+    .from(demandIntervals)
+    .where(inArray(demandIntervals.binId, binIds))
+    .groupBy(demandIntervals.binId)
+}
+
+// Supply ----------------------------------------------------------------------------------------------------------
+/** What a policy needs of the item and its first supplier. */
+export async function listSupply(db: Reader, itemIds: number[]) {
+  if (itemIds.length === 0) return []
+  return db
+    .select({
+      itemId: items.id,
+      shelfLifeDays: items.shelfLifeDays,
+      price: supplyAgreements.price,
+      supplier: suppliers,
+    })
+    .from(items)
+    .leftJoin(supplyAgreements, and(eq(supplyAgreements.itemId, items.id), eq(supplyAgreements.isPreferred, true)))
+    .leftJoin(suppliers, eq(suppliers.id, supplyAgreements.supplierId))
+    .where(inArray(items.id, itemIds))
+}
+export type SupplyRow = Awaited<ReturnType<typeof listSupply>>[number]
+
+// Runs ------------------------------------------------------------------------------------------------------------
+export async function insertRun(db: Db, row: typeof policyRuns.$inferInsert): Promise<number> {
+  const [made] = await db.insert(policyRuns).values(row).$returningId()
+  return made!.id
+}
+
+export async function updateRun(db: Db, id: number, set: Partial<typeof policyRuns.$inferInsert>): Promise<void> {
+  await db.update(policyRuns).set(set).where(eq(policyRuns.id, id))
+}
+
+export async function newestRun(db: Reader, cause: string) {
+  const [row] = await db
+    .select()
+    .from(policyRuns)
+    .where(eq(policyRuns.cause, cause))
+    .orderBy(desc(policyRuns.startedAt))
+    .limit(1)
+  return row ?? null
+}
