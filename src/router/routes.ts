@@ -28,6 +28,31 @@ export const routes: RouteRecordRaw[] = [
       },
       ...countRoutes,
       {
+        path: 'rooms',
+        name: 'rooms',
+        component: () => import('#src/pages/catalogue/RoomListPage.vue'),
+        meta: { place: 'rooms', offline: true },
+      },
+      {
+        path: '',
+        component: () => import('#src/pages/catalogue/RoomFrame.vue'),
+        meta: { place: 'rooms', offline: true },
+        children: [
+          {
+            path: 'rooms/:roomId',
+            name: 'room',
+            component: () => import('#src/pages/catalogue/RoomPage.vue'),
+            props: true,
+          },
+          {
+            path: 'bins/:binId',
+            name: 'bin',
+            component: () => import('#src/pages/catalogue/BinPage.vue'),
+            props: true,
+          },
+        ],
+      },
+      {
         path: 'me',
         name: 'me',
         component: () => import('#src/pages/people/MePage.vue'),

@@ -1,0 +1,1 @@
+/// <reference path="../shared/stats/jstat.d.ts" />
