@@ -23,6 +23,8 @@ export const RoundDraft = z.object({
   at: z.string().nullable(),
   done: z.record(z.string(), RoundMark),
   skipped: z.array(z.string()),
+  /** Places the record knew to be below their reorder point when the round began. */
+  knownBelow: z.array(z.string()),
   /** Digits typed and not saved, with the time of the last one. */
   digits: z.record(z.string(), z.object({ text: z.string(), at: z.number() })),
   startedAt: z.number(),

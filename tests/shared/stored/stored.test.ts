@@ -29,6 +29,7 @@ const draftV1 = {
   at: '10',
   done: { 9: { opId: outboxV1.opId, quantity: 12, receiptOpId: null, at: 1_796_000_000_000 } },
   skipped: [],
+  knownBelow: [],
   digits: { 10: { text: '4', at: 1_796_000_000_500 } },
   startedAt: 1_796_000_000_000,
   touchedAt: 1_796_000_000_500,
