@@ -53,6 +53,20 @@ export const routes: RouteRecordRaw[] = [
         ],
       },
       {
+        path: 'restock',
+        meta: { place: 'restock', roles: ['coordinator'] },
+        children: [
+          { path: '', name: 'restock', component: () => import('#src/pages/replenishment/RestockPage.vue') },
+          { path: 'orders', name: 'orders', component: () => import('#src/pages/replenishment/OrdersPage.vue') },
+          {
+            path: 'orders/:orderId',
+            name: 'order',
+            component: () => import('#src/pages/replenishment/OrderPage.vue'),
+            props: true,
+          },
+        ],
+      },
+      {
         path: 'me',
         name: 'me',
         component: () => import('#src/pages/people/MePage.vue'),

@@ -94,6 +94,12 @@ export function dueOn(date: string, today: string): string {
   return shortDay(date)
 }
 
+/** The same, short enough for a column: today, Wed, 8 Dec. */
+export function dueShort(date: string, today: string): string {
+  const gap = Math.round(plain(date).diff(plain(today), 'days').days)
+  return gap === 1 ? plain(date).toFormat('ccc') : dueOn(date, today)
+}
+
 /** A past or coming instant near now: "today 06:12", "yesterday 21:40", "Tue 14:00", "3 May, 08:15". */
 export function near(iso: string, now: string, zone: string): string {
   const gap = Math.round(plain(dateOf(iso, zone)).diff(plain(dateOf(now, zone)), 'days').days)
