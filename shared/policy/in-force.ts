@@ -1,0 +1,98 @@
+/** Levels a bin is kept by. Units of use. */
+export interface Levels {
+  reorderPoint: number | null
+  parLevel: number | null
+  orderQuantity: number | null
+}
+
+/** What decides whether a new calculation takes over. */
+export interface Settlement {
+  mode: 'as-before' | 'beside' | 'calculated'
+  /** Present figures, or null before the first. */
+  inForce: Levels | null
+  /** A calculation, or null where there is nothing to calculate from. */
+  computed: Levels | null
+  /** What a person entered. */
+  entered: Levels
+  /** What made it be looked at. */
+  cause: 'count' | 'service-level' | 'calendar' | 'rhythm' | 'mode' | 'entered' | 'nightly'
+  /** Counts in a row, this one included, whose calculation stood below the figures in force. */
+  lowerCounts: number
+}
+
+export interface Settled extends Levels {
+  changed: boolean
+  /** A calculation that does not hold yet, and what it waits for. */
+  pending: {
+    reorderPoint: number
+    parLevel: number | null
+    waitsFor: 'three-counts' | 'larger-change' | 'a-person'
+  } | null
+}
+
+const agreeing = 3
+const share = 0.1
+const units = 2
+
+/** These change the question itself, so the answer holds at once. */
+const atOnce = new Set<Settlement['cause']>(['service-level', 'calendar', 'rhythm', 'mode', 'entered'])
+
+/**
+ * Which figures are in force now. They stand still while counts come and go: a calculation takes over at once when a
+ * reviewer acts or a lead time, calendar or rhythm changes, or when it is higher by at least 10 % and 2 units; lower
+ * only when three counts in a row agree; below a level someone entered only with a person's yes.
+ */
+export function settle(s: Settlement): Settled {
+  if (s.mode !== 'calculated' || s.computed?.reorderPoint == null) return keepEntered(s)
+  const computed = s.computed as Levels & { reorderPoint: number }
+  const belowEntered = s.entered.reorderPoint !== null && computed.reorderPoint < s.entered.reorderPoint
+  const byEntered = s.inForce === null || s.inForce.reorderPoint === s.entered.reorderPoint
+  if (belowEntered && byEntered && s.cause !== 'service-level' && s.cause !== 'mode') {
+    const stay = s.inForce?.reorderPoint != null ? s.inForce : s.entered
+    return settled(s, stay, pendingOf(computed, 'a-person'))
+  }
+  const now = s.inForce?.reorderPoint ?? null
+  if (s.inForce === null || now === null || atOnce.has(s.cause)) return settled(s, computed, null)
+  if (computed.reorderPoint === now) return settled(s, computed, null)
+  if (computed.reorderPoint > now) {
+    const clear = computed.reorderPoint - now >= units && computed.reorderPoint >= now * (1 + share)
+    return clear ? settled(s, computed, null) : settled(s, s.inForce, pendingOf(computed, 'larger-change'))
+  }
+  return s.lowerCounts >= agreeing
+    ? settled(s, computed, null)
+    : settled(s, s.inForce, pendingOf(computed, 'three-counts'))
+}
+
+function keepEntered(s: Settlement): Settled {
+  const hasEntered = s.entered.reorderPoint !== null || s.entered.parLevel !== null
+  // Without an entered level a calculation is better than nothing, also where the room is kept as before.
+  const levels = hasEntered || s.computed?.reorderPoint == null ? s.entered : s.computed
+  const computed = s.computed?.reorderPoint ?? null
+  const shown = s.mode === 'beside' && hasEntered && computed !== null && computed !== levels.reorderPoint
+  return settled(s, levels, shown ? pendingOf(s.computed as Levels & { reorderPoint: number }, 'a-person') : null)
+}
+
+const pendingOf = (
+  computed: Levels & { reorderPoint: number },
+  waitsFor: NonNullable<Settled['pending']>['waitsFor'],
+): NonNullable<Settled['pending']> => ({
+  reorderPoint: computed.reorderPoint,
+  parLevel: computed.parLevel,
+  waitsFor,
+})
+
+function settled(s: Settlement, levels: Levels, pending: Settled['pending']): Settled {
+  const before = s.inForce
+  const changed =
+    before === null ||
+    before.reorderPoint !== levels.reorderPoint ||
+    before.parLevel !== levels.parLevel ||
+    before.orderQuantity !== levels.orderQuantity
+  return {
+    reorderPoint: levels.reorderPoint,
+    parLevel: levels.parLevel,
+    orderQuantity: levels.orderQuantity,
+    changed,
+    pending,
+  }
+}
