@@ -174,7 +174,8 @@ const supplierFields = {
   kind: z.enum(['stores', 'outside']),
   /** Weekdays on which an order may be placed; empty is any working day. */
   orderDays: days,
-  cutOff: clock,
+  /** Empty: orders are taken at every moment. */
+  cutOff: z.union([clock, z.literal('')]),
   /** Weekdays on which a delivery may come; empty is any working day. */
   arrivalDays: days,
   arrivalTime: clock,

@@ -46,9 +46,9 @@ export function settle(s: Settlement): Settled {
   if (s.mode !== 'calculated' || s.computed?.reorderPoint == null) return keepEntered(s)
   const computed = s.computed as Levels & { reorderPoint: number }
   const belowEntered = s.entered.reorderPoint !== null && computed.reorderPoint < s.entered.reorderPoint
-  const byEntered = s.inForce === null || s.inForce.reorderPoint === s.entered.reorderPoint
+  const byEntered = s.inForce === null || s.inForce.reorderPoint === s.entered.reorderPoint || s.cause === 'entered'
   if (belowEntered && byEntered && s.cause !== 'service-level' && s.cause !== 'mode') {
-    const stay = s.inForce?.reorderPoint != null ? s.inForce : s.entered
+    const stay = s.inForce?.reorderPoint != null && s.cause !== 'entered' ? s.inForce : s.entered
     return settled(s, stay, pendingOf(computed, 'a-person'))
   }
   const now = s.inForce?.reorderPoint ?? null
