@@ -61,14 +61,25 @@ export const useRoomsCacheStore = defineStore('rooms-cache', () => {
     }
   }
 
+  /** The list of rooms from this phone. */
+  async function openRooms(): Promise<void> {
+    const id = userId()
+    const here = id && !rooms.value ? await keptRooms(id) : null
+    if (!here || userId() !== id) return
+    rooms.value = here.rooms
+    roomsAt.value = here.fetchedAt
+  }
+
+  /** Every room this phone keeps, without a network. */
+  async function openAll(): Promise<void> {
+    await openRooms()
+    for (const room of rooms.value ?? []) await openKept(room.id)
+  }
+
   async function loadRooms(): Promise<void> {
     const id = userId()
     if (!id) return
-    const here = rooms.value ? null : await keptRooms(id)
-    if (here && userId() === id) {
-      rooms.value = here.rooms
-      roomsAt.value = here.fetchedAt
-    }
+    await openRooms()
     try {
       const fresh = await refreshRooms(id, () => Date.now())
       if (userId() !== id) return
@@ -115,5 +126,19 @@ export const useRoomsCacheStore = defineStore('rooms-cache', () => {
     return (room?.bins ?? []).filter((bin) => bin.itemId !== null && items.has(bin.itemId)).map((bin) => bin.id)
   }
 
-  return { rooms, roomsAt, kept, trouble, loadRooms, keepAll, openKept, refresh, bins, openLines, findCode, findGtin }
+  return {
+    rooms,
+    roomsAt,
+    kept,
+    trouble,
+    loadRooms,
+    keepAll,
+    openKept,
+    openAll,
+    refresh,
+    bins,
+    openLines,
+    findCode,
+    findGtin,
+  }
 })
