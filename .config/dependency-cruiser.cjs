@@ -31,7 +31,6 @@ module.exports = {
     doNotFollow: { path: 'node_modules' },
     exclude: { path: '(^\\.build|^\\.data|virtual:)' },
     tsPreCompilationDeps: true,
-    tsConfig: { fileName: '.config/tsconfig.base.json' },
     enhancedResolveOptions: {
       extensions: ['.ts', '.vue', '.js'],
       exportsFields: ['exports'],

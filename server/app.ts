@@ -2,13 +2,14 @@ import express, { Router, type Express } from 'express'
 import helmet from 'helmet'
 import pino from 'pino'
 import { pinoHttp } from 'pino-http'
-import { sql } from 'drizzle-orm'
 import { problem } from '#shared/contracts/problems.ts'
 import { catalogueRoutes } from './catalogue/catalogue.routes.ts'
 import { countsRoutes } from './counts/counts.routes.ts'
 import type { AppDeps } from './http/context.ts'
+import { isReady } from './http/readiness.ts'
 import { Routes, type RegisteredRoute } from './http/endpoint.ts'
 import { markReply, permissions, sameOriginWrites } from './http/guards.ts'
+import { insightRoutes } from './insight/insight.routes.ts'
 import { openApi } from './http/openapi.ts'
 import { problemHandler } from './http/problem-handler.ts'
 import { sessions } from './http/session.ts'
@@ -35,9 +36,7 @@ export function createApp(deps: AppDeps): { app: Express; routes: RegisteredRout
     res.json({ status: 'alive' })
   })
   app.get('/readyz', markReply, async (_req, res) => {
-    await deps.db.execute(sql`SELECT 1 FROM hospitals LIMIT 1`).catch((cause: unknown) => {
-      throw problem('not-ready', undefined, { cause })
-    })
+    await isReady(deps.db)
     res.json({ status: 'ready' })
   })
   if (deps.clientDir) app.use(clientFiles(deps.clientDir))
@@ -51,6 +50,7 @@ export function createApp(deps: AppDeps): { app: Express; routes: RegisteredRout
   policyRoutes(routes)
   reviewRoutes(routes)
   replenishmentRoutes(routes)
+  insightRoutes(routes)
   api.get('/openapi.json', (_req, res) => {
     res.json(openApi(routes.registered))
   })

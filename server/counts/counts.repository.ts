@@ -313,3 +313,8 @@ export async function newestRecordedAt(db: Reader): Promise<Date | null> {
   const [row] = await db.select({ at: max(movements.recordedAt) }).from(movements)
   return row?.at ?? null
 }
+
+export async function findLevel(db: Reader, binId: number): Promise<LevelRow | null> {
+  const [row] = await db.select().from(binLevels).where(eq(binLevels.binId, binId))
+  return row ?? null
+}

@@ -13,8 +13,10 @@ import { enqueue } from '../jobs/jobs.service.ts'
 import { payloadHash } from './canonical.ts'
 import {
   closeQuarantine,
+  countOpenQuarantine,
   closeRecounts,
   ensureRoomVersion,
+  findLevel,
   findOperation,
   insertLevel,
   insertMovements,
@@ -354,3 +356,23 @@ export async function leaveRoom(tx: Tx, binId: number, fromRoomId: number, toRoo
 
 /** When the ledger was last written. */
 export const newestRecord = newestRecordedAt
+
+/** Entries that could not be taken in and that nobody has settled. */
+export const openAttention = countOpenQuarantine
+
+/** Takes the locks of these bins, in the one order everybody keeps. */
+export async function lockBins(tx: Tx, binIds: number[]): Promise<void> {
+  await lockLevels(tx, binIds)
+}
+
+/** What differs between a stored level and a fresh fold, or null. */
+export async function levelDifference(db: Reader, binId: number): Promise<string | null> {
+  const level = await findLevel(db, binId)
+  if (!level) return 'no level is stored'
+  const rows = level.assignmentId === null ? [] : await listLedger(db, binId, level.assignmentId)
+  const { foldedAt: _moment, ...fresh } = levelOf(rows, new Date(0))
+  const { onHand, held, lastCountQuantity, lastCountAt, lastCountOpId } = level
+  const stored = { onHand, held, lastCountQuantity, lastCountAt, lastCountOpId }
+  const same = JSON.stringify(stored) === JSON.stringify(fresh)
+  return same ? null : `the stored level is ${JSON.stringify(stored)}, the ledger gives ${JSON.stringify(fresh)}`
+}

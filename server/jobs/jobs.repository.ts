@@ -1,4 +1,4 @@
-import { and, asc, eq, isNull, lt, lte, or } from 'drizzle-orm'
+import { and, asc, eq, gte, isNull, lt, lte, or } from 'drizzle-orm'
 import type { Db, Reader, Tx } from '../db/client.ts'
 import { isDuplicate } from '../db/errors.ts'
 import { jobs } from './jobs.tables.ts'
@@ -51,10 +51,5 @@ export async function failJob(
 }
 
 export async function listStuck(db: Reader, attempts: number): Promise<JobRow[]> {
-  return db
-    .select()
-    .from(jobs)
-    .where(lt(jobs.attempts, 10_000))
-    .limit(100)
-    .then((rows) => rows.filter((r) => r.attempts >= attempts))
+  return db.select().from(jobs).where(gte(jobs.attempts, attempts)).limit(100)
 }

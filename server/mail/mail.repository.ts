@@ -1,5 +1,5 @@
-import { and, asc, eq, inArray, isNull, lt, lte, or } from 'drizzle-orm'
-import type { Db, Tx } from '../db/client.ts'
+import { and, asc, eq, gte, inArray, isNull, lt, lte, or } from 'drizzle-orm'
+import type { Db, Reader, Tx } from '../db/client.ts'
 import { isDuplicate } from '../db/errors.ts'
 import { mailOutbox } from './mail.tables.ts'
 
@@ -49,4 +49,13 @@ export async function leaseDue(db: Db, owner: string, now: Date, leaseMs: number
 
 export async function updateMail(db: Db, id: number, set: Partial<MailRow>): Promise<void> {
   await db.update(mailOutbox).set(set).where(eq(mailOutbox.id, id))
+}
+
+/** Mail that failed several times and still waits. */
+export async function listStuck(db: Reader, attempts: number): Promise<MailRow[]> {
+  return db
+    .select()
+    .from(mailOutbox)
+    .where(and(eq(mailOutbox.state, 'due'), gte(mailOutbox.attempts, attempts)))
+    .limit(100)
 }

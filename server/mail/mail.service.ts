@@ -1,6 +1,6 @@
 import type { Clock } from '../clock.ts'
-import type { Db, Tx } from '../db/client.ts'
-import { insertMail, leaseDue, updateMail } from './mail.repository.ts'
+import type { Db, Reader, Tx } from '../db/client.ts'
+import { insertMail, leaseDue, listStuck, updateMail } from './mail.repository.ts'
 import type { Transport } from './transport.ts'
 
 export interface Mail {
@@ -57,3 +57,6 @@ export async function sendDue(db: Db, clock: Clock, transport: Transport, owner:
   }
   return sent
 }
+
+/** What an administrator should hear about. */
+export const stuckMail = (db: Reader) => listStuck(db, 3)

@@ -32,7 +32,7 @@ if (!process.env.DATABASE_URL) {
   stops.push(database.stop)
   say(`Database ready on 127.0.0.1:${database.port}.`)
 }
-process.env.DATABASE_URL ??= database.appUrl
+if (database) process.env.DATABASE_URL = database.appUrl
 if (database) process.env.DATABASE_ADMIN_URL = database.ownerUrl
 process.env.DATA_DIR = folder
 process.setSourceMapsEnabled(true)

@@ -71,8 +71,21 @@ export const BinPolicy = z.object({
       policyReference: z.string(),
       reviewBy: DateOnly,
       byName: z.string(),
+      own: z.boolean(),
     })
     .nullable(),
+  /** How the figures in force moved, newest first. */
+  history: z.array(
+    z.object({
+      reorderPoint: z.number().int().nullable(),
+      parLevel: z.number().int().nullable(),
+      target: z.number(),
+      source: ServiceLevel.shape.source,
+      method: z.string(),
+      cause: z.string(),
+      since: Instant,
+    }),
+  ),
 })
 export type BinPolicy = z.infer<typeof BinPolicy>
 
@@ -101,7 +114,7 @@ export const setServiceLevel = contract({
   allow: ['reviewer', 'coordinator'],
   params: idParams,
   body: z.strictObject({ level: z.number(), reason: text(500), policyReference: text(120), reviewBy: DateOnly }),
-  answer: BinPolicy.extend({ proposed: BinPolicy.shape.proposed }),
+  answer: BinPolicy,
   status: 201,
 })
 export const endServiceLevel = contract({
