@@ -67,6 +67,20 @@ export const routes: RouteRecordRaw[] = [
         ],
       },
       {
+        path: 'review',
+        meta: { place: 'review', roles: ['reviewer', 'coordinator', 'administrator'] },
+        children: [
+          { path: '', name: 'review', component: () => import('#src/pages/review/ReviewPage.vue') },
+          {
+            path: ':binId',
+            name: 'aim',
+            component: () => import('#src/pages/review/AimPage.vue'),
+            props: true,
+            meta: { roles: ['reviewer', 'coordinator'] },
+          },
+        ],
+      },
+      {
         path: 'me',
         name: 'me',
         component: () => import('#src/pages/people/MePage.vue'),

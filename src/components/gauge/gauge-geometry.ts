@@ -33,6 +33,8 @@ export interface GaugeOptions {
   bar: number
   /** Draw the bar in single units whatever the reorder point is. */
   units?: boolean
+  /** Leave the gap to the line empty: the bar is a choice, not a shortage. */
+  noGap?: boolean
 }
 
 export interface GaugeShape {
@@ -288,7 +290,7 @@ export function gaugeShape(figures: GaugeFigures, options: GaugeOptions): GaugeS
       drawOnOrder(shape, options, from, drawnTo)
     }
     const square = held && figures.onOrder === 0
-    if (position < reorderPoint)
+    if (position < reorderPoint && !options.noGap)
       shape.hatch = hatchFrom(
         Math.max(drawnTo, figures.onHand === 0 && figures.onOrder === 0 ? STUB : 0),
         lineX,

@@ -51,7 +51,6 @@ function wardBeside(bin: Bin, at: Moment): Pick<RowWords, 'beside' | 'besideTone
   const on = dueWords(bin, at)
   if (bin.lastCount === null) return { beside: gaugeWords.neverCounted, besideTone: 'plain' }
   if (bin.states.includes('empty')) return { beside: on ? `empty, ${on}` : 'empty', besideTone: 'below' }
-  if (bin.states.includes('count-first')) return { beside: gaugeWords.countFirst, besideTone: 'plain' }
   if (bin.states.includes('below')) return { beside: on || 'order due', besideTone: 'below' }
   return { beside: null, besideTone: 'plain' }
 }
@@ -64,6 +63,7 @@ function besideOf(bin: Bin, role: Role, at: Moment): Pick<RowWords, 'beside' | '
 
 function rightOf(bin: Bin, role: Role, at: Moment): string | null {
   if (bin.recordsDisagree) return 'records disagree, count it'
+  if (bin.states.includes('count-first')) return gaugeWords.countFirst
   const today = dateOf(at.now, at.zone)
   if (role !== 'nurse' && bin.states.includes('empty')) return gaugeWords.empty(bin.onOrder, bin.expectedOn, today)
   if (bin.states.includes('late-order') && role !== 'nurse') return `${gaugeWords.onOrder(bin.onOrder)}, late`
@@ -99,7 +99,7 @@ export function rowWords(bin: Bin, role: Role, at: Moment, more: { waiting?: boo
 
 /** The row's caption in the narrow pane, where one line has to do. */
 export function narrowCaption(words: RowWords, bin: Bin): string | null {
-  if (bin.lastCount === null || bin.states.includes('count-first')) return words.beside
+  if (bin.lastCount === null) return words.beside
   return words.right === 'enough' ? null : words.right
 }
 

@@ -39,7 +39,8 @@ export const gaugeWords = {
   beside(figures: GaugeFigures): string | null {
     if (figures.onHand === null) return gaugeWords.neverCounted
     if (figures.reorderPoint === null) return gaugeWords.noPoint
-    if (figures.countFirst) return gaugeWords.countFirst
+    // By the record its bar passes the line, so these words have no room here.
+    if (figures.countFirst) return null
     const under = underOf(figures)
     if (under > 0) return gaugeWords.under(under)
     return isAtPoint(figures) ? gaugeWords.atPoint : null

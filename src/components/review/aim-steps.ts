@@ -1,0 +1,63 @@
+import type { PolicyInput } from '#shared/policy/policy-input.ts'
+import type { PolicyResult } from '#shared/policy/policy-result.ts'
+
+/** What one aim would mean for a bin, beside the point in force. */
+export interface AimStep {
+  level: number
+  reorderPoint: number
+  /** Units kept above what is expected to be used. */
+  safetyStock: number
+  /** Units more (or less) on the shelf than now. */
+  units: number
+  /** Money more (or less) tied up than now; null without a price. */
+  cost: number | null
+  /** The shelf is too small and cuts the point. */
+  cut: boolean
+  now: boolean
+}
+
+const USUAL = [0.9, 0.95, 0.975, 0.98, 0.99, 0.995, 0.998, 0.999]
+
+const same = (a: number, b: number): boolean => Math.abs(a - b) < 1e-9
+
+/** The steps offered: the usual ones inside the hospital's floor and ceiling, and the present aim. */
+export function aimLevels(floor: number, ceiling: number, present: number, more: number[] = []): number[] {
+  const inside = [...USUAL, present, ...more].filter((level) => level >= floor - 1e-9 && level <= ceiling + 1e-9)
+  return inside.sort((a, b) => a - b).filter((level, i, all) => i === 0 || !same(level, all[i - 1] as number))
+}
+
+/**
+ * Works every step out with the policy's own input; nothing is sent anywhere.
+ *
+ * @param reorderPoint the shared function, handed in because it is loaded only when somebody changes an aim
+ */
+export function aimSteps(
+  reorderPoint: (input: PolicyInput) => PolicyResult,
+  input: PolicyInput,
+  levels: readonly number[],
+  present: { level: number; reorderPoint: number | null },
+): AimStep[] {
+  const price = input.order?.unitCost ?? null
+  return levels.flatMap((level) => {
+    const result = reorderPoint({ ...input, serviceLevel: level })
+    if (result.reorderPoint === null || result.safetyStock === null) return []
+    const units = result.reorderPoint - (present.reorderPoint ?? result.reorderPoint)
+    return [
+      {
+        level,
+        reorderPoint: result.reorderPoint,
+        safetyStock: result.safetyStock,
+        units,
+        cost: price === null ? null : units * price,
+        cut: result.warnings.includes('shelf-cannot-hold'),
+        now: same(level, present.level),
+      },
+    ]
+  })
+}
+
+/** Delivery cycles a year of one place: what it uses over what it orders at a time. */
+export function cyclesPerYear(meanPerDay: number, orderQuantity: number | null): number | null {
+  if (!(meanPerDay > 0) || !orderQuantity) return null
+  return (meanPerDay * 365) / orderQuantity
+}

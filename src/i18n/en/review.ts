@@ -1,0 +1,115 @@
+import type { ReviewRow } from '#shared/contracts/policy.ts'
+import { counted, day, decimal, money, odds, oddsIn, onceIn, percent, quantity, signed } from './format.ts'
+
+export type ReviewShow = 'due' | 'proposed' | 'vital' | 'moved' | 'all'
+
+export const reviewWords = {
+  title: 'Review',
+  lead: 'How sure each place is meant to be, and what happened.',
+  shows: {
+    vital: 'Vital items',
+    due: 'Due for review',
+    proposed: 'Proposed',
+    moved: 'Moved',
+    all: 'All',
+  } satisfies Record<ReviewShow, string>,
+  which: 'Show',
+  columns: {
+    item: 'Item',
+    room: 'Room',
+    point: 'Reorder point',
+    aim: 'Aim: may run out',
+    happened: 'What happened',
+    counts: 'Counts',
+    reviewBy: 'Review by',
+  },
+  aimShort: (level: number): string => `aim 1 in ${quantity(oddsIn(level))}`,
+  aimCell: (level: number): string => `1 in ${quantity(oddsIn(level))}`,
+  happened: (row: Pick<ReviewRow, 'runOuts'>): string =>
+    row.runOuts.cycles === 0 ? 'no cycles yet' : `${quantity(row.runOuts.found)} of ${quantity(row.runOuts.cycles)}`,
+  ranOut: (row: Pick<ReviewRow, 'runOuts'>): string =>
+    row.runOuts.cycles === 0
+      ? 'no delivery cycles yet'
+      : `ran out ${quantity(row.runOuts.found)} of ${quantity(row.runOuts.cycles)}`,
+  happenedNote: 'What happened: delivery cycles in which it was found empty, of those on record.',
+  due: (row: Pick<ReviewRow, 'review' | 'reviewBy'>): string | null => {
+    if (!row.reviewBy) return null
+    if (row.review === 'due') return `review due since ${day(row.reviewBy)}`
+    return `review by ${day(row.reviewBy)}`
+  },
+  proposal: (row: ReviewRow): string =>
+    row.proposal
+      ? `${row.proposal.own ? 'you propose' : `${row.proposal.byName} proposes`} 1 in ${quantity(oddsIn(row.proposal.level))}`
+      : '',
+  none: 'Nothing here',
+  noneWhat: 'Nothing matches. Choose another list above.',
+  data: (days: number, intervals: number): string =>
+    `${quantity(Math.round(days))} days of counts, ${counted(intervals, 'stretch')} to learn from${intervals < 8 ? ': thin data' : ''}`,
+} as const
+
+export const aimWords = {
+  title: 'How sure should it be?',
+  steps: 'May run out',
+  pointNow: (point: number | null): string =>
+    point === null ? 'no reorder point' : `reorder point now, ${quantity(point)}`,
+  step: (level: number): string => `1 in ${quantity(oddsIn(level))}`,
+  stepLong: (level: number): string => odds(level),
+  reorderAt: 'reorder at',
+  stepLeft: (level: number, safety: number): string => `${percent(level)} · ${decimal(safety)} above use`,
+  difference: (units: number, cost: number | null, unit: string, currency: string): string => {
+    if (units === 0) return 'no change'
+    const cash = cost === null || cost === 0 ? '' : `, ${money(Math.abs(cost), currency)} ${cost > 0 ? 'more' : 'less'}`
+    return `${signed(units)} ${unit}${cash}`
+  },
+  now: 'now',
+  other: 'Another aim',
+  otherHint: 'Delivery cycles out of which one may run out.',
+  otherLabel: 'One in',
+  otherUse: 'Add it',
+  outside: (floor: number, ceiling: number): string =>
+    `Between 1 in ${quantity(oddsIn(floor))} and 1 in ${quantity(oddsIn(ceiling))}: the hospital’s floor and ceiling.`,
+  cut: (capacity: number | null): string =>
+    capacity === null
+      ? 'The shelf is too small for some of these.'
+      : `The shelf holds ${quantity(capacity)}, so some of these are cut to fit.`,
+  once: (level: number, cycles: number | null): string =>
+    cycles === null
+      ? `At this aim ${odds(level)} runs out.`
+      : `At this aim ${odds(level)} runs out; this place ${onceIn(level, cycles)}.`,
+  working: 'Working it out …',
+  cannot: 'There are not enough counts to work this out. The aim can still be set; it is used as soon as there are.',
+  reason: 'Reason',
+  policyReference: 'Policy reference',
+  reviewBy: 'Review by',
+  set: (level: number, point: number | null): string =>
+    point === null
+      ? `Set 1 in ${quantity(oddsIn(level))}`
+      : `Set 1 in ${quantity(oddsIn(level))}, reorder at ${quantity(point)}`,
+  propose: (level: number, point: number | null): string =>
+    point === null
+      ? `Propose 1 in ${quantity(oddsIn(level))}`
+      : `Propose 1 in ${quantity(oddsIn(level))}, reorder at ${quantity(point)}`,
+  second: 'A second reviewer confirms before it counts.',
+  reviewer: 'A reviewer decides before it counts.',
+  saved: (level: number, point: number | null): string =>
+    point === null ? `Set: ${odds(level)}.` : `Set: ${odds(level)}. Reorder point ${quantity(point)}.`,
+  proposedSaved: (level: number): string => `Proposed: ${odds(level)}. Nothing changes until it is decided.`,
+  waiting: (who: string, level: number): string => `${who} proposes ${odds(level)}`,
+  waitingWhy: (reason: string, reference: string, reviewBy: string): string =>
+    `${reason} · ${reference} · review by ${day(reviewBy)}`,
+  own: 'You proposed this. A second person decides it.',
+  approve: 'Approve',
+  decline: 'Decline',
+  note: 'Note',
+  approved: 'Approved. The policy follows at once.',
+  declined: 'Declined. Nothing changed.',
+  end: 'End this aim',
+  endTitle: 'End the aim set for this place?',
+  endWhat: 'The aim of its class holds again. The record of this one is kept.',
+  ended: 'Ended. The aim of its class holds again.',
+  keep: 'Keep it',
+  toBin: 'Its page',
+  needReason: 'Say why, in a sentence.',
+  needReference: 'Name the policy or decision this follows.',
+  needReviewBy: 'Give a day after today, at most two years on.',
+} as const
