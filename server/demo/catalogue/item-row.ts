@@ -9,7 +9,7 @@ export const units = {
   bottle: { code: 'BO', note: 'Count bottles. An opened bottle does not count.' },
   set: { code: 'SET', note: 'Count sets. A set with a broken seal does not count.' },
   tube: { code: 'TU', note: 'Count tubes. A tube in use does not count.' },
-  tub: { code: 'TU', note: 'Count tubs. An opened tub counts as one.' },
+  tub: { code: 'TB', note: 'Count tubs. An opened tub counts as one.' },
 } as const
 
 /**

@@ -1,0 +1,111 @@
+import type { Hospital, Room, Supplier, Ward } from '#shared/contracts/catalogue.ts'
+
+/** The invented hospital. Levels are starting values, a facility's own choice, not advice. */
+export const hospital: Hospital = {
+  name: 'Tallowmere General',
+  timeZone: 'Europe/London',
+  binWord: 'place',
+  currency: 'GBP',
+  levels: { V: 0.995, E: 0.98, D: 0.95 },
+  floor: 0.9,
+  ceiling: 0.999,
+  twoPersons: false,
+  vitalPolicyText:
+    'Vital items follow the supply policy of Tallowmere General. If a vital item is missing or its number looks wrong, phone central stores; do not wait for the list.',
+  vitalPolicyLink: 'https://intranet.tallowmere.example/supply-policy',
+  resupplyPhone: '2210',
+  orderingCost: 0,
+  holdingRatePerYear: 0.2,
+  demo: true,
+}
+
+export const wards: Omit<Ward, 'id' | 'retired'>[] = [
+  { code: 'ALD', name: 'Alder', kind: 'general', site: 'Main building' },
+  { code: 'BIR', name: 'Birch', kind: 'general', site: 'Main building' },
+  { code: 'CED', name: 'Cedar', kind: 'intensive', site: 'Main building' },
+  { code: 'ELD', name: 'Elder', kind: 'emergency', site: 'Front building' },
+  { code: 'HAZ', name: 'Hazel', kind: 'children', site: 'Garden wing' },
+  { code: 'ROW', name: 'Rowan', kind: 'theatre', site: 'Main building' },
+]
+
+export interface DemoRoom {
+  /** As item rows name it. */
+  key: string
+  code: string
+  name: string
+  ward: string
+  countEveryDays: number
+  mode: Room['mode']
+}
+
+/** Rooms by what they are for: medical, surgical, intensive care, emergency, children, theatres. */
+export const rooms: DemoRoom[] = [
+  { key: 'A1', code: 'ALD-1', name: 'Alder supply room', ward: 'ALD', countEveryDays: 3, mode: 'calculated' },
+  { key: 'A2', code: 'ALD-2', name: 'Alder treatment room', ward: 'ALD', countEveryDays: 7, mode: 'calculated' },
+  { key: 'B1', code: 'BIR-1', name: 'Birch supply room', ward: 'BIR', countEveryDays: 4, mode: 'calculated' },
+  { key: 'C1', code: 'CED-1', name: 'Cedar supply room', ward: 'CED', countEveryDays: 2, mode: 'calculated' },
+  { key: 'C2', code: 'CED-2', name: 'Cedar breathing store', ward: 'CED', countEveryDays: 4, mode: 'calculated' },
+  { key: 'E1', code: 'ELD-1', name: 'Elder supply room', ward: 'ELD', countEveryDays: 2, mode: 'calculated' },
+  { key: 'H1', code: 'HAZ-1', name: 'Hazel supply room', ward: 'HAZ', countEveryDays: 5, mode: 'beside' },
+  { key: 'R1', code: 'ROW-1', name: 'Rowan theatre store', ward: 'ROW', countEveryDays: 7, mode: 'as-before' },
+]
+
+/** Central stores and three invented suppliers; delivery times as they state them, in days. */
+export const suppliers: Omit<Supplier, 'id' | 'retired'>[] = [
+  {
+    code: 'CS',
+    name: 'Central stores',
+    email: 'central.stores@tallowmere.example',
+    kind: 'stores',
+    orderDays: '12345',
+    cutOff: '10:00',
+    arrivalDays: '12345',
+    arrivalTime: '14:00',
+    leadWorkingDays: 1,
+    minimumOrder: 0,
+    leadTimeDays: 1.2,
+    leadTimeSd: 0.5,
+  },
+  {
+    code: 'FEN',
+    name: 'Fenwold Clinical',
+    email: 'orders@fenwold.example',
+    kind: 'outside',
+    orderDays: '14',
+    cutOff: '12:00',
+    arrivalDays: '12345',
+    arrivalTime: '11:00',
+    leadWorkingDays: 3,
+    minimumOrder: 50,
+    leadTimeDays: 4.2,
+    leadTimeSd: 1.3,
+  },
+  {
+    code: 'MAR',
+    name: 'Marlpit Medical',
+    email: 'desk@marlpit.example',
+    kind: 'outside',
+    orderDays: '25',
+    cutOff: '15:00',
+    arrivalDays: '1345',
+    arrivalTime: '12:00',
+    leadWorkingDays: 4,
+    minimumOrder: 0,
+    leadTimeDays: 6,
+    leadTimeSd: 2,
+  },
+  {
+    code: 'TAR',
+    name: 'Tarnside Fluids',
+    email: 'orders@tarnside.example',
+    kind: 'outside',
+    orderDays: '135',
+    cutOff: '11:00',
+    arrivalDays: '12345',
+    arrivalTime: '09:00',
+    leadWorkingDays: 2,
+    minimumOrder: 0,
+    leadTimeDays: 2.6,
+    leadTimeSd: 0.8,
+  },
+]
