@@ -4,6 +4,11 @@ import type { DemandMoments, ExpectedUse } from './demand-moments.ts'
 import type { ResolvedInterval } from './resolve-input.ts'
 
 const MOST_ROUNDS = 5000
+/**
+ * The filled-in squares feed the dispersion that fills them in; with many empty endings and little else that can grow
+ * without end. The dispersion used for filling in stays below this many times the largest one in sight.
+ */
+const DISPERSION_BOUND = 10
 
 /** Moments of over-dispersed counts with empty endings filled in by expectation. */
 export interface CensoredCounts {
@@ -31,12 +36,14 @@ export function censoredCounts(
   const whole = intervals.filter((interval) => !interval.censored)
   const freedom = whole.length > 0 ? Math.max(0, demandMoments(whole).intervals - 1) : 0
   let moments = demandMoments(intervals)
+  const bound = DISPERSION_BOUND * Math.max(1, prior.nu0 > 0 ? prior.w0 : 1, moments.dispersion ?? 1)
   if (whole.length === intervals.length) return { moments, freedom }
   let rate = moments.meanPerDay > 0 ? moments.meanPerDay : 0.5 / moments.exposureDays
   for (let round = 0; round < MOST_ROUNDS; round++) {
     const seen = moments.dispersion ?? 1
     const known = prior.nu0 + freedom
-    const dispersion = Math.max(1.0001, known > 0 ? (prior.nu0 * prior.w0 + freedom * seen) / known : 1)
+    const mixed = known > 0 ? (prior.nu0 * prior.w0 + freedom * seen) / known : 1
+    const dispersion = Math.min(bound, Math.max(1.0001, mixed))
     moments = demandMoments(intervals, expectedUse(intervals, rate, dispersion))
     const next = Math.max(0, rateRule(moments, dispersion))
     const change = Math.abs(next - rate)

@@ -3,7 +3,7 @@ import type { DemandLaw } from './demand-law.ts'
 import { refused } from './policy-input-error.ts'
 
 /** Most multiplications spent on one convolution; beyond it the caller is told to take another method. */
-const MOST_STEPS = 3e8
+const MOST_STEPS = 2e7
 
 /**
  * Demand over `days` whole days when daily amounts are drawn again and again from the days seen: the exact

@@ -21,9 +21,15 @@ export interface DemandLaw {
  * Smallest whole number of units r >= 0 with P(D <= r) >= p.
  *
  * Continuous laws: max(0, ceil(r_exact - 1e-9)), never rounded to nearest (statistics, section 2.1).
+ *
+ * @throws {RangeError} when the level would pass 2^53
  */
 export function levelFor(law: DemandLaw, p: number): number {
-  if (law.exactQuantile) return Math.max(0, Math.ceil(law.exactQuantile(p) - 1e-9))
+  if (law.exactQuantile) {
+    const level = Math.max(0, Math.ceil(law.exactQuantile(p) - 1e-9))
+    if (!(level <= Number.MAX_SAFE_INTEGER)) throw new RangeError('the distribution function does not reach p')
+    return level
+  }
   return integerQuantile(
     law.cdf,
     p - (law.slack ?? 0),

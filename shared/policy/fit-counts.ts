@@ -9,6 +9,9 @@ import { countedWastage } from './fitted.ts'
 import type { Fitted } from './fitted.ts'
 import type { ResolvedInput, ResolvedInterval } from './resolve-input.ts'
 
+/** Keeps a node finite where a tiny prior weight puts its chi-square at 0. */
+const LARGEST_DISPERSION = 1e9
+
 /** Jeffreys' prior of a Poisson rate (statistics, 4.4). */
 const JEFFREYS = { a: 0.5, b: 0 }
 
@@ -116,7 +119,7 @@ export function fitMixture(input: ResolvedInput, intervals: ResolvedInterval[]):
       const ratios = new Float64Array(MIXTURE_NODES)
       let mean = 0
       for (let k = 0; k < MIXTURE_NODES; k++) {
-        const w = Math.max(1, (nu * pooled) / nodes[k]!)
+        const w = Math.min(LARGEST_DISPERSION, Math.max(1, (nu * pooled) / nodes[k]!))
         means[k] = meanAt(w)
         ratios[k] = ratioAt(w)
         mean += means[k]! / MIXTURE_NODES

@@ -10,6 +10,7 @@ import { combinedMoments, countedWastage } from './fitted.ts'
 import type { Fitted, Horizon } from './fitted.ts'
 import { negativeBinomialLaw } from './count-laws.ts'
 import { orderQuantity } from './order-quantity.ts'
+import { refused } from './policy-input-error.ts'
 import type { PolicyInput } from './policy-input.ts'
 import type { PolicyResult } from './policy-result.ts'
 import { policyWarnings } from './policy-warnings.ts'
@@ -99,8 +100,13 @@ function serviceOf(input: ResolvedInput, law: DemandLaw): (level: number) => num
 }
 
 function computedLevel(input: ResolvedInput, law: DemandLaw, service: (level: number) => number): number {
-  if (input.serviceMeasure === 'cycle') return levelFor(law, input.serviceLevel)
-  return integerQuantile(service, input.serviceLevel, law.mean)
+  try {
+    if (input.serviceMeasure === 'cycle') return levelFor(law, input.serviceLevel)
+    return integerQuantile(service, input.serviceLevel, law.mean)
+  } catch (error) {
+    if (!(error instanceof RangeError)) throw error
+    throw refused(input.intervals ? '/intervals' : '/demand', 'the figures vary too much for any level to meet the aim')
+  }
 }
 
 /** The shelf life is a fixed stretch of usual activity, whatever the lead time does; daily records become counts. */
@@ -129,6 +135,7 @@ function textbookLevel(input: ResolvedInput): number | null {
 /** The level the plug-in negative binomial would give: what is above it is the allowance for few counts. */
 function plugInLevel(input: ResolvedInput, fitted: Fitted): number | null {
   if (fitted.method !== 'negative-binomial-mixture' || fitted.variancePerDay === null) return null
+  if (input.serviceMeasure === 'fill' || input.leadTime.observedDays.length > 0) return null
   const spread = input.leadTime.sdDays * input.exposureRatio
   const horizon = { days: input.protectionDays, exposure: input.protectionExposureDays, variance: spread * spread }
   const { mean, variance } = combinedMoments(Math.max(0, fitted.meanPerDay), fitted.variancePerDay, horizon)

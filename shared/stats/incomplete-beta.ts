@@ -40,7 +40,7 @@ function continuedFraction(x: number, a: number, b: number): number {
     c = guard(1 + odd / c)
     const delta = d * c
     h *= delta
-    if (Math.abs(delta - 1) < 1e-16) break
+    if (Math.abs(delta - 1) < 5e-16) break
   }
   return h
 }

@@ -59,7 +59,7 @@ function continuedFraction(a: number, x: number): number {
     d = 1 / d
     const delta = d * c
     h *= delta
-    if (Math.abs(delta - 1) < 1e-16) break
+    if (Math.abs(delta - 1) < 5e-16) break
   }
   return h
 }

@@ -1,6 +1,6 @@
 import { negativeBinomialMass } from './negative-binomial-mass.ts'
 import { negativeBinomialUpperTail } from './negative-binomial-upper-tail.ts'
-import { tailLoss } from './tail-loss.ts'
+import { tailLoss, WIDEST_TAIL } from './tail-loss.ts'
 
 /**
  * Expected units short E[(D - r)+] when demand is negative binomial with real size k and success probability q.
@@ -18,10 +18,10 @@ export function negativeBinomialLoss(r: number, size: number, probability: numbe
   const mean = size * beta
   if (r <= 0) return mean - r
   const whole = Math.floor(r)
-  if (whole >= mean) {
+  if (whole >= mean && mean / probability < WIDEST_TAIL * WIDEST_TAIL) {
     const first = negativeBinomialMass(whole + 1, size, probability)
     return tailLoss(r, first, (y) => ((size + y) / (y + 1)) * (1 - probability))
   }
   const upper = negativeBinomialUpperTail(whole, size, probability)
-  return (mean - r) * upper + (whole + size) * beta * negativeBinomialMass(whole, size, probability)
+  return Math.max(0, (mean - r) * upper + (whole + size) * beta * negativeBinomialMass(whole, size, probability))
 }

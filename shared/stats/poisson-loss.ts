@@ -1,6 +1,6 @@
 import { incompleteGamma } from './incomplete-gamma.ts'
 import { poissonMass } from './poisson-mass.ts'
-import { tailLoss } from './tail-loss.ts'
+import { tailLoss, WIDEST_TAIL } from './tail-loss.ts'
 
 /**
  * Expected units short E[(D - r)+] when demand is Poisson.
@@ -19,6 +19,7 @@ export function poissonLoss(r: number, mean: number): number {
   if (r <= 0) return mean - r
   if (mean === 0) return 0
   const whole = Math.floor(r)
-  if (whole >= mean) return tailLoss(r, poissonMass(whole + 1, mean), (y) => mean / (y + 1))
-  return (mean - r) * incompleteGamma(whole + 1, mean).lower + mean * poissonMass(whole, mean)
+  if (whole >= mean && mean < WIDEST_TAIL * WIDEST_TAIL)
+    return tailLoss(r, poissonMass(whole + 1, mean), (y) => mean / (y + 1))
+  return Math.max(0, (mean - r) * incompleteGamma(whole + 1, mean).lower + mean * poissonMass(whole, mean))
 }

@@ -1,3 +1,6 @@
+/** A tail of a law with a larger standard deviation is not added up term by term: it would take too long. */
+export const WIDEST_TAIL = 1e5
+
 /**
  * Sum of (y - r) f(y) over the integers y above r, for a law whose masses follow f(y + 1) = f(y) ratio(y).
  *
