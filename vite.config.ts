@@ -62,20 +62,25 @@ export default defineConfig({
     },
   },
   test: {
+    maxWorkers: 2,
     projects: [
       {
         extends: true,
-        test: { name: 'shared', include: ['tests/shared/**/*.test.ts', 'tests/architecture/**/*.test.ts'], environment: 'node' },
+        test: {
+          name: 'shared',
+          include: ['tests/shared/**/*.test.ts', 'tests/architecture/**/*.test.ts'],
+          environment: 'node',
+        },
       },
       {
         extends: true,
         test: {
           name: 'server',
+          globalSetup: ['tests/support/global-setup.ts'],
           include: ['tests/server/**/*.test.ts'],
           environment: 'node',
           hookTimeout: 60_000,
           testTimeout: 30_000,
-          maxWorkers: 2,
         },
       },
       {

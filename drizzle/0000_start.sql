@@ -189,6 +189,7 @@ CREATE TABLE `movements` (
 	`type` varchar(16) NOT NULL,
 	`quantity` int NOT NULL,
 	`effective_at` datetime(3) NOT NULL,
+	`stated_at` datetime(3) NOT NULL,
 	`recorded_at` datetime(3) NOT NULL,
 	`user_id` bigint unsigned NOT NULL,
 	`device_id` varchar(64) NOT NULL,

@@ -75,7 +75,11 @@ export function authenticate(
     const done = (error: unknown, actor?: unknown): void => {
       if (error) return reject(error as Error)
       if (!actor) return resolve(null)
-      req.logIn(actor as Express.User, (failed) => (failed ? reject(failed as Error) : resolve(actor as Actor)))
+      req.logIn(actor as Express.User, (failed) => {
+        if (failed) return reject(failed as Error)
+        req.session.seenAt = deps.clock.now().getTime()
+        resolve(actor as Actor)
+      })
     }
     ;(auth.authenticate('local', done) as RequestHandler)(asked, res, (error?: unknown) => reject(error as Error))
   })

@@ -187,7 +187,7 @@ interface UserFields {
 /** The unique keys say which of the two is taken. */
 function takenProblem(error: unknown): unknown {
   if (!isDuplicate(error)) return error
-  return duplicateKey(error).includes('staff_code')
+  return /staff/i.test(duplicateKey(error))
     ? fieldProblem('/staffCode', 'another person has this staff code')
     : fieldProblem('/email', 'another person has this e-mail')
 }
