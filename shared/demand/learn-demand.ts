@@ -1,0 +1,47 @@
+import type { PolicyInput } from '#shared/policy/policy-input.ts'
+import type { FoldedRow } from '#shared/ledger/fold.ts'
+import type { LedgerRow } from '#shared/ledger/movement.ts'
+import { countRhythm } from './count-rhythm.ts'
+import type { DemandEvent, DemandInterval } from './demand-events.ts'
+import { demandIntervals } from './demand-intervals.ts'
+import { forget } from './forget.ts'
+import { policyIntervals, wastageRate } from './policy-intervals.ts'
+
+const dayMs = 86_400_000
+
+/** What one assignment of a bin teaches. */
+export interface LearnedDemand {
+  /** Every interval, used or not, oldest first. */
+  intervals: DemandInterval[]
+  /** What the policy learns from. */
+  forPolicy: NonNullable<PolicyInput['intervals']>
+  wastagePerDay: number
+  /** Days to expect between counts. */
+  rhythmDays: number
+  /** Epoch ms and id of the last standing count. */
+  lastCount: { at: number; opId: string } | null
+}
+
+/** Folded ledger → demand process, all of section 4.0 that needs no other bin. */
+export function learnDemand(
+  rows: readonly FoldedRow<LedgerRow>[],
+  options: { packSize: number; plannedRhythmDays: number },
+): LearnedDemand {
+  const events: DemandEvent[] = rows
+    .filter((f) => f.voidedBy === null)
+    .map((f) => ({ opId: f.row.opId, type: f.row.type, quantity: f.row.quantity, effectiveAt: f.row.effectiveAt }))
+  const intervals = forget(demandIntervals(events, options))
+  const counts = events.filter((e) => e.type === 'count')
+  const last = counts.at(-1)
+  return {
+    intervals,
+    forPolicy: policyIntervals(intervals),
+    wastagePerDay: wastageRate(intervals),
+    rhythmDays: countRhythm(gapsOf(intervals), options.plannedRhythmDays),
+    lastCount: last ? { at: last.effectiveAt, opId: last.opId } : null,
+  }
+}
+
+/** Gaps between counts that are counts of their own: a recount 20 minutes later is no rhythm. */
+const gapsOf = (intervals: readonly DemandInterval[]): number[] =>
+  intervals.map((i) => (i.closedAt - i.openedAt) / dayMs)
