@@ -9,6 +9,8 @@ const MOST_ROUNDS = 5000
  * without end. The dispersion used for filling in stays below this many times the largest one in sight.
  */
 const DISPERSION_BOUND = 10
+/** After so many rounds the dispersion stands still: from hopeless data it may swing for ever, the rate alone settles. */
+const SWINGING_ROUNDS = 1000
 
 /** Moments of over-dispersed counts with empty endings filled in by expectation. */
 export interface CensoredCounts {
@@ -38,12 +40,13 @@ export function censoredCounts(
   let moments = demandMoments(intervals)
   const bound = DISPERSION_BOUND * Math.max(1, prior.nu0 > 0 ? prior.w0 : 1, moments.dispersion ?? 1)
   if (whole.length === intervals.length) return { moments, freedom }
+  let dispersion = 1.0001
   let rate = moments.meanPerDay > 0 ? moments.meanPerDay : 0.5 / moments.exposureDays
   for (let round = 0; round < MOST_ROUNDS; round++) {
     const seen = moments.dispersion ?? 1
     const known = prior.nu0 + freedom
     const mixed = known > 0 ? (prior.nu0 * prior.w0 + freedom * seen) / known : 1
-    const dispersion = Math.min(bound, Math.max(1.0001, mixed))
+    if (round < SWINGING_ROUNDS) dispersion = Math.min(bound, Math.max(1.0001, mixed))
     moments = demandMoments(intervals, expectedUse(intervals, rate, dispersion))
     const next = Math.max(0, rateRule(moments, dispersion))
     const change = Math.abs(next - rate)

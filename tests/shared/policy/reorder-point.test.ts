@@ -364,7 +364,7 @@ describe('properties of the recommended method', () => {
   it('depends on neither the order of intervals nor the scale of weights, and survives being stored', () => {
     fc.assert(
       fc.property(
-        history,
+        history.map((entries) => entries.map((entry) => ({ ...entry, censored: false }))),
         level,
         days,
         fc.double({ min: 0.1, max: 9, noNaN: true }),
@@ -375,7 +375,7 @@ describe('properties of the recommended method', () => {
           const reversed = reorderPoint({ ...input, intervals: [...intervals].reverse() })
           expect(reversed.achieved).toBeCloseTo(got.achieved!, 9)
           const scaled = reorderPoint({ ...input, intervals: intervals.map((entry) => ({ ...entry, weight: scale })) })
-          expect(scaled.protectionDemand!.variance).toBeCloseTo(got.protectionDemand!.variance, 6)
+          expect(scaled.protectionDemand!.variance / got.protectionDemand!.variance).toBeCloseTo(1, 9)
         },
       ),
       { numRuns: 60 },
