@@ -6,6 +6,7 @@ import './css/base.css'
 import { createPinia } from 'pinia'
 import { createApp } from 'vue'
 import App from './App.vue'
+import { startOffline } from './boot/offline.ts'
 import { installQuasar } from './boot/quasar.ts'
 import { makeRouter } from './router/index.ts'
 import { useSessionStore } from './stores/session.ts'
@@ -17,4 +18,5 @@ installQuasar(app)
 useSettingsStore()
 const router = makeRouter(useSessionStore())
 app.use(router)
+startOffline()
 void router.isReady().then(() => app.mount('#app'))

@@ -53,6 +53,7 @@ export const countWords = {
   copied: 'Copied.',
   tryAgain: 'Try again',
   listOf: 'Places in walking order',
+  allPlaces: 'All places',
   done: 'counted',
   place: (bay: string, shelf: string): string =>
     [bay && `Bay ${bay}`, shelf && `shelf ${shelf}`].filter(Boolean).join(' · '),
@@ -131,7 +132,7 @@ export const questionWords = {
   back: 'Back to the number',
   noneLeft: 'None left',
   zero: 'An empty place is reported at once: the coordinator sees it first in the list.',
-  zeroVital: 'None counted here. Do not wait for this app: use your facility’s emergency supply route now.',
+  zeroVital: 'None counted here. Do not wait for this program: use your facility’s emergency supply route now.',
   rise: (from: number, to: number): string =>
     `The record expects ${quantity(from)}; you counted ${quantity(to)}. If a delivery was put away, saying so keeps the record of use right.`,
   putAway: (units: number, order: string): string => `Yes, ${quantity(units)} from order ${order}`,
@@ -151,6 +152,7 @@ export const roundWords = {
   begin: (n: number, minutes: number): string =>
     `${places(n)}, ${quantity(minutes)} ${minutes === 1 ? 'minute' : 'minutes'}`,
   all: (n: number): string => `Count all ${places(n)}`,
+  allShort: (n: number): string => `All ${quantity(n)}`,
   goOn: (done: number, of: number): string => `Go on: ${quantity(done)} of ${quantity(of)} counted`,
   startOver: 'Start over',
   notKept: 'not on this phone yet',
