@@ -27,5 +27,7 @@ export function guard(to: RouteLocationNormalized, who: Who): true | RouteLocati
   if (!who.user) return { name: 'sign-in', query: back }
   if (who.ended && !to.meta.offline) return { name: 'sign-in', query: back }
   if (to.meta.roles && !to.meta.roles.includes(who.user.role)) return { name: 'not-yours' }
+  // People are the one kind of record that only the administrator sees.
+  if (to.params.kind === 'people' && who.user.role !== 'administrator') return { name: 'not-yours' }
   return true
 }

@@ -81,6 +81,32 @@ export const routes: RouteRecordRaw[] = [
         ],
       },
       {
+        path: 'hospital',
+        component: () => import('#src/pages/catalogue/HospitalFrame.vue'),
+        meta: { place: 'hospital', roles: ['coordinator', 'administrator'] },
+        children: [
+          { path: '', name: 'hospital', component: { render: () => null } },
+          {
+            path: 'settings',
+            name: 'hospital-settings',
+            component: () => import('#src/pages/catalogue/SettingsPage.vue'),
+            meta: { roles: ['administrator'] },
+          },
+          {
+            path: ':kind(wards|rooms|items|suppliers|bins|people)',
+            name: 'hospital-list',
+            component: () => import('#src/pages/catalogue/RecordListPage.vue'),
+            props: true,
+          },
+          {
+            path: ':kind(wards|rooms|items|suppliers|bins|people)/:id',
+            name: 'hospital-record',
+            component: () => import('#src/pages/catalogue/RecordPage.vue'),
+            props: true,
+          },
+        ],
+      },
+      {
         path: 'me',
         name: 'me',
         component: () => import('#src/pages/people/MePage.vue'),
