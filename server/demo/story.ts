@@ -42,6 +42,6 @@ export const story = {
   neverKeyed: { room: 'BIR-1', item: 'DR-001' },
   /** Part of its order is here. */
   partReceived: places('ROW-1', 'TH-001', 'TH-003'),
-  /** One working day late, still believed. */
-  lateBelieved: { room: 'CED-2', item: 'MO-030' },
+  /** A working day or two late, still believed. */
+  lateBelieved: { room: 'CED-1', item: 'FL-042' },
 } as const
