@@ -46,7 +46,8 @@ export function nextSlot(calendar: OrderCalendar, from: number, after = false): 
 }
 
 /**
- * When an order placed by a slot arrives: its lead in working or calendar days, then the next permitted delivery day.
+ * When an order placed by a slot arrives: its lead in working or calendar days, then the next permitted delivery
+ * moment, never before the slot itself. Working days leave holidays out; calendar days count them.
  *
  * @param slot epoch ms of a cut-off
  * @returns epoch ms
@@ -57,13 +58,17 @@ export function arrivalOf(calendar: OrderCalendar, slot: number): number {
   let day = DateTime.fromMillis(slot, { zone: calendar.zone }).startOf('day')
   if (calendar.lead.kind === 'calendar') day = day.plus({ days: calendar.lead.days })
   else {
+    let ahead = 0
     for (let counted = 0; counted < calendar.lead.days;) {
       day = day.plus({ days: 1 })
+      ahead += 1
+      if (ahead > searchDays + 7 * calendar.lead.days) throw new RangeError('the order calendar has no working day')
       if (calendar.workingDays.includes(day.weekday) && !isHoliday(day)) counted += 1
     }
   }
   for (let ahead = 0; ahead <= searchDays; ahead += 1, day = day.plus({ days: 1 })) {
-    if (calendar.arrivalDays.includes(day.weekday) && !isHoliday(day)) return at(day, calendar.arrivalTime).toMillis()
+    const arrival = at(day, calendar.arrivalTime).toMillis()
+    if (calendar.arrivalDays.includes(day.weekday) && !isHoliday(day) && arrival >= slot) return arrival
   }
   throw new RangeError('the order calendar has no delivery day within a year')
 }

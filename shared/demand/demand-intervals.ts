@@ -78,7 +78,7 @@ function intervalBetween(
     openedAt: open.effectiveAt,
     closedAt: close.effectiveAt,
     days,
-    exposureDays: why === 'was-empty' ? days : exposureDays,
+    exposureDays: exposureDays < shortestMs / dayMs ? days : exposureDays,
     quantity,
     censored: close.quantity === 0 && !heldAway,
     weight: 1,

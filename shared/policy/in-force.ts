@@ -15,7 +15,7 @@ export interface Settlement {
   /** What a person entered. */
   entered: Levels
   /** What made it be looked at. */
-  cause: 'count' | 'service-level' | 'calendar' | 'rhythm' | 'mode' | 'entered' | 'nightly'
+  cause: 'count' | 'service-level' | 'calendar' | 'rhythm' | 'mode' | 'entered' | 'accepted' | 'nightly'
   /** Counts in a row, this one included, whose calculation stood below the figures in force. */
   lowerCounts: number
 }
@@ -34,23 +34,27 @@ const agreeing = 3
 const share = 0.1
 const units = 2
 
+type Cause = Settlement['cause']
+type Computed = Levels & { reorderPoint: number }
+
 /** These change the question itself, so the answer holds at once. */
-const atOnce = new Set<Settlement['cause']>(['service-level', 'calendar', 'rhythm', 'mode', 'entered'])
+const atOnce = new Set<Cause>(['service-level', 'calendar', 'rhythm', 'mode', 'entered', 'accepted'])
+/** Acts of a person about this very figure: they may also lead below a level someone entered. */
+const byPerson = new Set<Cause>(['service-level', 'mode', 'accepted'])
 
 /**
  * Which figures are in force now. They stand still while counts come and go: a calculation takes over at once when a
  * reviewer acts or a lead time, calendar or rhythm changes, or when it is higher by at least 10 % and 2 units; lower
  * only when three counts in a row agree; below a level someone entered only with a person's yes.
+ *
+ * A yes once given stays: figures already below the entered level may go on falling by the rule of three counts, until
+ * somebody enters a level again. Shape: `lowerCounts` counts this count too. Units: units of use.
  */
 export function settle(s: Settlement): Settled {
   if (s.mode !== 'calculated' || s.computed?.reorderPoint == null) return keepEntered(s)
-  const computed = s.computed as Levels & { reorderPoint: number }
-  const belowEntered = s.entered.reorderPoint !== null && computed.reorderPoint < s.entered.reorderPoint
-  const byEntered = s.inForce === null || s.inForce.reorderPoint === s.entered.reorderPoint || s.cause === 'entered'
-  if (belowEntered && byEntered && s.cause !== 'service-level' && s.cause !== 'mode') {
-    const stay = s.inForce?.reorderPoint != null && s.cause !== 'entered' ? s.inForce : s.entered
-    return settled(s, stay, pendingOf(computed, 'a-person'))
-  }
+  const computed = s.computed as Computed
+  const floor = enteredFloor(s)
+  if (floor !== null && computed.reorderPoint < floor) return stopAtEntered(s, computed, floor)
   const now = s.inForce?.reorderPoint ?? null
   if (s.inForce === null || now === null || atOnce.has(s.cause)) return settled(s, computed, null)
   if (computed.reorderPoint === now) return settled(s, computed, null)
@@ -58,8 +62,28 @@ export function settle(s: Settlement): Settled {
     const clear = computed.reorderPoint - now >= units && computed.reorderPoint >= now * (1 + share)
     return clear ? settled(s, computed, null) : settled(s, s.inForce, pendingOf(computed, 'larger-change'))
   }
-  return s.lowerCounts >= agreeing
-    ? settled(s, computed, null)
+  return mayFall(s) ? settled(s, computed, null) : settled(s, s.inForce, pendingOf(computed, 'three-counts'))
+}
+
+const mayFall = (s: Settlement): boolean => atOnce.has(s.cause) || s.lowerCounts >= agreeing
+
+/** The entered level below which nothing goes by itself; null where there is none or a person agreed to less. */
+function enteredFloor(s: Settlement): number | null {
+  const entered = s.entered.reorderPoint
+  if (entered === null || byPerson.has(s.cause)) return null
+  const now = s.inForce?.reorderPoint ?? null
+  const agreed = now !== null && now < entered && s.cause !== 'entered'
+  return agreed ? null : entered
+}
+
+/** Falls to the entered level at most; the rest of the way waits for a person. */
+function stopAtEntered(s: Settlement, computed: Computed, floor: number): Settled {
+  const now = s.inForce?.reorderPoint ?? null
+  if (s.inForce === null || now === null || s.cause === 'entered')
+    return settled(s, s.entered, pendingOf(computed, 'a-person'))
+  if (now === floor) return settled(s, s.inForce, pendingOf(computed, 'a-person'))
+  return mayFall(s)
+    ? settled(s, s.entered, pendingOf(computed, 'a-person'))
     : settled(s, s.inForce, pendingOf(computed, 'three-counts'))
 }
 

@@ -1,6 +1,6 @@
 import { integerQuantile } from '#shared/stats/integer-quantile.ts'
 import { normalQuantile } from '#shared/stats/normal-quantile.ts'
-import { averageLaw, levelFor } from './demand-law.ts'
+import { levelFor } from './demand-law.ts'
 import type { DemandLaw } from './demand-law.ts'
 import { demandMoments } from './demand-moments.ts'
 import { enteredResult } from './entered-result.ts'
@@ -11,6 +11,7 @@ import type { Fitted, Horizon } from './fitted.ts'
 import { negativeBinomialLaw } from './count-laws.ts'
 import { orderQuantity } from './order-quantity.ts'
 import { refused } from './policy-input-error.ts'
+import { protectionLaw } from './protection-law.ts'
 import type { PolicyInput } from './policy-input.ts'
 import type { PolicyResult } from './policy-result.ts'
 import { policyWarnings } from './policy-warnings.ts'
@@ -69,27 +70,6 @@ export function reorderPoint(input: PolicyInput): PolicyResult {
 /** A cut leaves room for one pack above the reorder point. */
 function shelfLimit(input: ResolvedInput): number {
   return Math.max(0, input.capacity! - input.order.packSize)
-}
-
-/** Demand until the next arrival; over the lead times seen, where there are some (statistics, 1.3). */
-function protectionLaw(input: ResolvedInput, fitted: Fitted): DemandLaw {
-  const { observedDays, sdDays } = input.leadTime
-  if (observedDays.length === 0) {
-    const spread = sdDays * input.exposureRatio
-    return fitted.lawOver({
-      days: input.protectionDays,
-      exposure: input.protectionExposureDays,
-      variance: spread * spread,
-    })
-  }
-  const shares = new Map<number, number>()
-  for (const days of observedDays) shares.set(days, (shares.get(days) ?? 0) + 1 / observedDays.length)
-  return averageLaw(
-    [...shares].map(([lead, weight]) => {
-      const days = lead + input.reviewPeriodDays
-      return { law: fitted.lawOver({ days, exposure: days * input.exposureRatio, variance: 0 }), weight }
-    }),
-  )
 }
 
 /** What a level achieves in the measure asked for. Fill rate: 1 - [L(r) - L(r + Q)]/Q (statistics, 2.3). */

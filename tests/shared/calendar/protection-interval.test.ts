@@ -94,4 +94,43 @@ describe('protectionInterval', () => {
   it('says so when a calendar has no order day', () => {
     expect(() => nextSlot({ ...stores, slots: [] }, 0)).toThrow(RangeError)
   })
+
+  it('says so when a calendar has no working or delivery day', () => {
+    const slot = nextSlot(stores, Date.parse('2026-11-02T09:00:00Z'))
+    expect(() => arrivalOf({ ...stores, workingDays: [] }, slot)).toThrow(RangeError)
+    expect(() => arrivalOf({ ...stores, arrivalDays: [] }, slot)).toThrow(RangeError)
+  })
+
+  it('never lets an order arrive before its own cut-off', () => {
+    const evening = { ...stores, slots: [{ weekday: 1, cutOff: '16:00' }], lead: { kind: 'working' as const, days: 0 } }
+    const monday = nextSlot(evening, Date.parse('2026-11-02T09:00:00Z'))
+    expect(new Date(arrivalOf(evening, monday)).toISOString()).toBe('2026-11-03T14:00:00.000Z')
+  })
+
+  it('takes an order exactly at the cut-off as in time, a millisecond later as the next one', () => {
+    const cutOff = Date.parse('2026-11-02T10:00:00Z')
+    expect(nextSlot(stores, cutOff)).toBe(cutOff)
+    expect(nextSlot(stores, cutOff + 1)).toBe(cutOff + 86_400_000)
+    expect(nextSlot(stores, cutOff, true)).toBe(cutOff + 86_400_000)
+  })
+
+  it('never shrinks as an overdue count waits, and covers both parts it is made of', () => {
+    const countedAt = Date.parse('2027-03-22T09:00:00Z')
+    let last = 0
+    for (let hours = 0; hours < 24 * 21; hours += 5) {
+      const found = protectionInterval(stores, { countedAt, asOf: countedAt + hours * 3_600_000, rhythmDays: 2.5 })
+      expect(found.days).toBeGreaterThanOrEqual(last)
+      expect(found.days).toBeCloseTo(found.leadMeanDays + found.reviewDays, 9)
+      expect(found.nextOrderBy).toBeGreaterThan(found.firstOrderBy)
+      last = found.days
+    }
+  })
+
+  it('is quick enough for every bin of a hospital', () => {
+    const countedAt = Date.parse('2027-03-22T09:00:00Z')
+    const began = performance.now()
+    for (let bin = 0; bin < 300; bin++)
+      protectionInterval(stores, { countedAt: countedAt + bin * 60_000, asOf: countedAt + 86_400_000, rhythmDays: 7 })
+    expect(performance.now() - began).toBeLessThan(2000)
+  })
 })
