@@ -1,0 +1,56 @@
+import { describe, expect, it } from 'vitest'
+import { reorderPoint } from '#shared/policy/reorder-point.ts'
+import { aimLevels, aimSteps, cyclesPerYear } from '#src/components/review/aim-steps.ts'
+import { reviewDays } from '#src/components/review/review-days.ts'
+
+const input = {
+  demand: { meanPerDay: 6, variancePerDay: 11 },
+  leadTime: { meanDays: 2 },
+  reviewPeriodDays: 1,
+  serviceLevel: 0.98,
+  order: { packSize: 5, unitCost: 3 },
+  capacity: 100,
+}
+
+describe('aims', () => {
+  it('offers the usual steps inside floor and ceiling, with the present aim among them', () => {
+    expect(aimLevels(0.95, 0.995, 0.985)).toEqual([0.95, 0.975, 0.98, 0.985, 0.99, 0.995])
+    expect(aimLevels(0.9, 0.999, 0.98).filter((level) => level === 0.98)).toHaveLength(1)
+  })
+
+  it('works each step out exactly as the policy would, with the difference to now', () => {
+    const steps = aimSteps(reorderPoint, input, [0.95, 0.98, 0.999], { level: 0.98, reorderPoint: 25 })
+    for (const step of steps) {
+      const direct = reorderPoint({ ...input, serviceLevel: step.level })
+      expect(step.reorderPoint).toBe(direct.reorderPoint)
+      expect(step.units).toBe(step.reorderPoint - 25)
+      expect(step.cost).toBe(step.units * 3)
+    }
+    expect(steps.map((s) => s.now)).toEqual([false, true, false])
+    expect(steps[0]!.reorderPoint).toBeLessThan(steps[2]!.reorderPoint)
+  })
+
+  it('says when the shelf cuts a step', () => {
+    const [high] = aimSteps(reorderPoint, { ...input, capacity: 20 }, [0.999], { level: 0.98, reorderPoint: 15 })
+    expect(high).toMatchObject({ cut: true, reorderPoint: 15 })
+  })
+
+  it('has no cost without a price', () => {
+    const [step] = aimSteps(reorderPoint, { ...input, order: { packSize: 5 } }, [0.99], {
+      level: 0.98,
+      reorderPoint: 25,
+    })
+    expect(step?.cost).toBeNull()
+  })
+
+  it('knows how often a place is delivered to', () => {
+    expect(cyclesPerYear(2, 50)).toBeCloseTo(14.6)
+    expect(cyclesPerYear(0, 50)).toBeNull()
+  })
+})
+
+describe('reviewDays', () => {
+  it('lies after today and at most two years on', () => {
+    expect(reviewDays('2026-05-14')).toEqual({ first: '2026-05-15', last: '2028-05-14', usual: '2026-08-14' })
+  })
+})
