@@ -4,9 +4,7 @@ import vue from 'eslint-plugin-vue'
 import prettier from 'eslint-config-prettier'
 import globals from 'globals'
 
-const noClock = [
-  { selector: "NewExpression[callee.name='Date'][arguments.length=0]", message: 'Pass the clock in.' },
-]
+const noClock = [{ selector: "NewExpression[callee.name='Date'][arguments.length=0]", message: 'Pass the clock in.' }]
 
 export default ts.config(
   { ignores: ['**/node_modules/**', '**/.build/**', '**/.data/**', '**/.tmp/**', 'drizzle/**'] },
@@ -35,7 +33,10 @@ export default ts.config(
   {
     files: ['shared/**/*.ts'],
     rules: {
-      'no-restricted-imports': ['error', { patterns: [{ regex: '^(?![.]{1,2}/|#shared/|zod$|jstat$|@stdlib/|luxon$)', message: 'shared/ is pure.' }] }],
+      'no-restricted-imports': [
+        'error',
+        { patterns: [{ regex: '^(?![.]{1,2}/|#shared/|zod$|jstat$|@stdlib/|luxon$)', message: 'shared/ is pure.' }] },
+      ],
       'no-restricted-properties': [
         'error',
         { object: 'Date', property: 'now', message: 'Pass the clock in.' },

@@ -1,7 +1,7 @@
 // Runs before anything is painted, so that a dark phone never shows a white page while the program loads.
 ;(function () {
   var root = document.documentElement
-  var stored = {}
+  var stored
   try {
     stored = JSON.parse(localStorage.getItem('brimline.settings') || '{}') || {}
   } catch {

@@ -7,7 +7,7 @@ import { inTransaction } from '../db/transaction.ts'
 import { newestRun, recompute, recomputeAll } from '../policy/policy.service.ts'
 import { enqueue, type JobHandler } from './jobs.service.ts'
 
-const cause = z.enum(['count', 'service-level', 'calendar', 'rhythm', 'mode', 'entered', 'nightly'])
+const cause = z.enum(['count', 'service-level', 'calendar', 'rhythm', 'mode', 'entered', 'accepted', 'nightly'])
 const OneBin = z.object({ binId: z.number().int(), cause })
 const AllBins = z.object({ cause })
 

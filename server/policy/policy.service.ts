@@ -17,12 +17,13 @@ import * as repo from './policy.repository.ts'
 /** What made a policy be looked at. */
 export type Cause = Settlement['cause']
 
-/** A calculation with what it was made from; input and result are null where there is nothing to learn from. */
+/** A calculation with what it was made from. */
 interface Calculation {
   learned: LearnedDemand
-  input: PolicyInput | null
-  result: PolicyResult | null
-  protection: Protection | null
+  input: PolicyInput
+  /** Method `entered` and no demand where there is nothing to learn from. */
+  result: PolicyResult
+  protection: Protection
   aim: Aim
 }
 
@@ -64,10 +65,9 @@ async function calculate(tx: Tx, now: Date, hospital: Money, view: BinView): Pro
   const itemId = view.row.itemId!
   const aim = (await aimsOf(tx, [{ binId: view.row.id, itemId, ved: view.row.ved ?? 'D' }])).get(view.row.id)!
   const [supply] = await repo.listSupply(tx, [itemId])
-  if (!learned.lastCount || learned.forPolicy.length === 0)
-    return { learned, aim, input: null, result: null, protection: null }
   const protection = protectionOf(supply?.supplier ?? null, hospital.timeZone, {
-    countedAt: new Date(learned.lastCount.at),
+    // A place never counted is looked at as if now: its answer is what was entered.
+    countedAt: learned.lastCount ? new Date(learned.lastCount.at) : now,
     asOf: now,
     rhythmDays: learned.rhythmDays,
   })
@@ -86,7 +86,7 @@ const enteredLevels = (view: BinView): Levels => ({
 
 /** Counts in a row whose calculation stood below the figure in force. */
 function lowerCounts(before: repo.PolicyRow | null, calculation: Calculation): number {
-  const computed = calculation.result?.reorderPoint ?? null
+  const computed = calculation.result.reorderPoint
   if (!before || computed === null || before.reorderPoint === null || computed >= before.reorderPoint) return 0
   const isNewCount = before.lastCountOpId !== (calculation.learned.lastCount?.opId ?? null)
   return isNewCount ? before.lowerCounts + 1 : before.lowerCounts
@@ -115,7 +115,7 @@ async function store(
   })
   const row = {
     mode: view.row.roomMode,
-    method: calculation.result?.method ?? 'entered',
+    method: calculation.result.method,
     target: calculation.aim.target,
     targetSource: calculation.aim.source,
     pending: settled.pending,

@@ -18,6 +18,10 @@ export function reviewRoutes(routes: Routes): void {
     const binId = await review.decide(tx, clock, actor, Number(params.id), body)
     return readBinPolicy(tx, clock, actor, binId)
   })
+  routes.write(c.acceptCalculated, async ({ tx, clock, actor, params }) => {
+    await review.acceptCalculated(tx, clock, actor, Number(params.id))
+    return readBinPolicy(tx, clock, actor, Number(params.id))
+  })
   routes.write(c.setPinnedFloor, async ({ tx, clock, actor, params, body }) => {
     await review.setFloor(tx, clock, actor, Number(params.id), body)
     return readBinPolicy(tx, clock, actor, Number(params.id))

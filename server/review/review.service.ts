@@ -156,6 +156,20 @@ export async function setFloor(
   await recompute(tx, clock, binId, 'service-level')
 }
 
+/** A person's yes: from now on the place is kept by what is worked out. Vital items are the reviewer's. */
+export async function acceptCalculated(tx: Tx, clock: Clock, actor: Actor, binId: number): Promise<void> {
+  const view = await subjectOf(tx, clock, actor, binId)
+  if (view.row.ved === 'V' && actor.role !== 'reviewer') {
+    throw problem('not-allowed', 'This item is vital: the reviewer decides how it is kept.')
+  }
+  if (view.row.roomMode !== 'calculated') {
+    throw problem('already-decided', 'This room is kept by entered levels. Change how the room is kept first.')
+  }
+  const now = clock.now()
+  await audit(tx, { at: now, userId: actor.id, action: 'calculation-accepted', subject: 'bin', subjectId: binId })
+  await recompute(tx, clock, binId, 'accepted')
+}
+
 /** What waits for a second person, by bin; the proposer's role, or the name where the reader may see it. */
 export async function proposalsOf(db: Reader, actor: Actor, binIds: number[]) {
   const rows = await repo.listOverrides(db, binIds, [], ['proposed'])

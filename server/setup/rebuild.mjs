@@ -17,11 +17,10 @@ if (!process.env.DATABASE_URL) {
 }
 process.env.DATA_DIR = folder
 const { rebuild } = await import(inRoot('.build/server/main.js'))
-let differences = 1
 try {
-  differences = await rebuild(process.env, say)
+  const differences = await rebuild(process.env, say)
+  process.exitCode = differences ? 1 : 0
 } finally {
   // A database that was running before belongs to a running Brimline.
   if (database && !database.adopted) await database.stop()
 }
-process.exit(differences ? 1 : 0)

@@ -135,6 +135,16 @@ export const decideProposal = contract({
   answer: BinPolicy,
 })
 
+/** A person's yes to a calculation that stands below what somebody entered. */
+export const acceptCalculated = contract({
+  method: 'POST',
+  path: '/bins/:id/accept-calculated',
+  summary: 'Keep this place by what is worked out from now on; vital items by the reviewer',
+  allow: ['coordinator', 'reviewer'],
+  params: idParams,
+  answer: BinPolicy,
+})
+
 /** A hard minimum of one bin, apart from what is worked out. */
 export const setPinnedFloor = contract({
   method: 'POST',

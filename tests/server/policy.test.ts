@@ -53,7 +53,7 @@ describe('a bin’s policy', () => {
     expect(await policyOf()).toMatchObject({
       reorderPoint: 12,
       parLevel: 30,
-      computed: null,
+      computed: { method: 'entered', demand: null, reorderPoint: null },
       serviceLevel: { target: 0.995, source: 'class' },
     })
   })

@@ -1,1 +1,0 @@
-/// <reference path="../shared/stats/jstat.d.ts" />
