@@ -96,11 +96,14 @@ function ending(state: BinState, days: readonly Day[], rounds: readonly Round[],
   if (isOneOf(story.partReceived, plan)) {
     const slot = lastSlot(plan, days, (s) => s.sentAt <= to - 12 * hourMs)
     const isHere = plan.item.code === story.partReceived[0]?.item
-    const putAwayAt = slot && isHere ? Math.min(slot.sentAt + 27 * hourMs, to - hourMs) : null
+    const putAwayAt = slot && isHere ? byTheWay(slot, to) : null
     return slot ? forced(slot, 'part', { isAcknowledged: true, putAwayAt }) : {}
   }
   return {}
 }
+
+/** What the supplier had at hand comes with another van: the next afternoon, or the evening of the same day. */
+const byTheWay = (slot: Slot, to: number): number => slot.sentAt + (slot.sentAt + 27 * hourMs < to ? 27 : 8) * hourMs
 
 const forced = (slot: Slot, name: string, more: Omit<ForcedOrder, 'slot' | 'name'>): Partial<Script> => ({
   noOrderAfter: slot.decidedAt - 1,
