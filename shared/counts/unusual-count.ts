@@ -79,9 +79,9 @@ function tenfold(situation: CountSituation, usual: UsualRange | null): number | 
   const range = usual ?? { from: record, to: record }
   if (quantity >= range.from && quantity <= range.to) return null
   const middle = (range.from + range.to) / 2
-  // Within 5 % of the record counts as fitting too, for places whose use is not known yet.
-  const fits = (n: number): boolean =>
-    (n >= range.from && n <= range.to) || Math.abs(n - record) <= record * 0.05 || Math.abs(n - middle) <= middle * 0.05
+  // A little above the range fits too: records run behind small deliveries, and the use may not be known yet.
+  const most = range.to + Math.max(2, range.to * 0.3)
+  const fits = (n: number): boolean => (n >= range.from && n <= most) || Math.abs(n - record) <= record * 0.05
   // Nearer to ten times the usual number, or to a tenth of it, than to the number itself or a hundred times.
   const factor = middle > 0 ? Math.max(quantity / middle, middle / Math.max(1, quantity)) : 1
   if (factor < slip.from || factor > slip.to) return null

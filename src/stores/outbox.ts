@@ -33,7 +33,7 @@ export const useOutboxStore = defineStore('outbox', () => {
   const session = useSessionStore()
   const entries = shallowRef<OutboxEntry[]>([])
   const others = shallowRef<{ initials: string; count: number }[]>([])
-  const sync = ref<SyncState>({ phase: 'idle', nextTryAt: null, lastSentAt: null })
+  const sending = ref<SyncState>({ phase: 'idle', nextTryAt: null, lastSentAt: null })
   /** False when the browser may clear this phone's storage; null when it was not asked yet. */
   const storageProtected = ref<boolean | null>(null)
   let stopSync: (() => void) | null = null
@@ -42,6 +42,8 @@ export const useOutboxStore = defineStore('outbox', () => {
   const waiting = computed(() => entries.value.filter((e) => e.state === 'queued' || e.state === 'sending'))
   const attention = computed(() => entries.value.filter((e) => e.state === 'attention'))
   const unsent = computed(() => waiting.value.length + attention.value.length)
+  /** What sending is doing; after the end of a session it waits for the same person, whatever it did last. */
+  const sync = computed<SyncState>(() => (session.ended ? { ...sending.value, phase: 'signed-out' } : sending.value))
   const oldestWaitingAt = computed(() => entries.value.find(isOpen)?.savedAt ?? null)
 
   async function load(): Promise<void> {
@@ -83,15 +85,15 @@ export const useOutboxStore = defineStore('outbox', () => {
   /** Starts keeping and sending, once a page. */
   function start(): void {
     if (stopSync) return
-    const sending = startSync({
+    const started = startSync({
       userId: () => (session.ended ? null : (session.user?.id ?? null)),
       refreshSession: () => session.confirm(),
       onAuthzVersion: (version) => {
         if (version !== session.authzVersion) void session.confirm().catch(() => undefined)
       },
-      onState: (state) => (sync.value = state),
+      onState: (state) => (sending.value = state),
     })
-    sendNow = sending.now
+    sendNow = started.now
     joinOtherTabs()
     watchConnection()
     window.addEventListener('pagehide', leaveOtherTabs)
@@ -110,7 +112,7 @@ export const useOutboxStore = defineStore('outbox', () => {
       return unsent.value
     })
     stopSync = () => {
-      sending.stop()
+      started.stop()
       stopListening()
       stopWatching()
       leaveOtherTabs()

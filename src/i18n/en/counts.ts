@@ -97,7 +97,7 @@ export const scanWords = {
   noPlaceForItem: 'No place in this room holds this item. Scan the shelf label.',
   severalPlaces: (n: number): string => `${places(n)} of this room hold this item; this is the next of them.`,
   unknown: (display: string): string => `No place with the code ${display} is known on this phone.`,
-  countAnyway: 'Count it all the same',
+  countAnyway: 'Count it anyway',
   anotherRoom: 'another room',
   otherRoom: (display: string, room: string): string => `${display} stands in ${room}.`,
   goThere: 'Go to that room',
