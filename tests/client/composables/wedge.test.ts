@@ -9,7 +9,7 @@ let wedge: ReturnType<typeof makeWedge>
 const key = (
   name: string,
   more: Partial<WedgeEvent> = {},
-): WedgeEvent & { preventDefault: ReturnType<typeof vi.fn> } => ({
+): WedgeEvent & { preventDefault: ReturnType<typeof vi.fn<() => void>> } => ({
   key: name,
   code: '',
   ctrlKey: false,
@@ -18,7 +18,7 @@ const key = (
   timeStamp: now,
   stopPropagation: () => undefined,
   ...more,
-  preventDefault: vi.fn(),
+  preventDefault: vi.fn<() => void>(),
 })
 
 /** Presses keys one after another with a gap in milliseconds; names longer than one character stand alone. */
