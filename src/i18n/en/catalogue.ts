@@ -35,10 +35,11 @@ function ageWords(bin: Bin, at: Moment): string | null {
   return bin.lastCount ? ageOfCount(daysAgo(bin.lastCount.effectiveAt, at.now, at.zone)) : null
 }
 
-function dueWords(bin: Bin, at: Moment): string {
-  if (bin.onOrder <= 0) return ''
+/** When the next delivery comes, for the caption: "due Thu"; null when nothing is on its way or no day is known. */
+function dueCaption(bin: Bin, at: Moment): string | null {
+  if (bin.onOrder <= 0) return null
   if (bin.states.includes('late-order')) return 'delivery late'
-  return bin.expectedOn ? `on its way, ${dueOn(bin.expectedOn, dateOf(at.now, at.zone))}` : 'on its way'
+  return bin.expectedOn ? `due ${dueOn(bin.expectedOn, dateOf(at.now, at.zone))}` : null
 }
 
 function overLine(bin: Bin): string | null {
@@ -47,16 +48,15 @@ function overLine(bin: Bin): string | null {
 }
 
 /** Ward staff see facts: enough, order due, on its way, empty; the reorder point only on the place's own page. */
-function wardBeside(bin: Bin, at: Moment): Pick<RowWords, 'beside' | 'besideTone'> {
-  const on = dueWords(bin, at)
+function wardBeside(bin: Bin): Pick<RowWords, 'beside' | 'besideTone'> {
   if (bin.lastCount === null) return { beside: gaugeWords.neverCounted, besideTone: 'plain' }
-  if (bin.states.includes('empty')) return { beside: on ? `empty, ${on}` : 'empty', besideTone: 'below' }
-  if (bin.states.includes('below')) return { beside: on || 'order due', besideTone: 'below' }
+  if (bin.states.includes('empty')) return { beside: 'empty', besideTone: 'below' }
+  if (bin.states.includes('below')) return { beside: bin.onOrder > 0 ? 'on its way' : 'order due', besideTone: 'below' }
   return { beside: null, besideTone: 'plain' }
 }
 
-function besideOf(bin: Bin, role: Role, at: Moment): Pick<RowWords, 'beside' | 'besideTone'> {
-  if (role === 'nurse') return wardBeside(bin, at)
+function besideOf(bin: Bin, role: Role): Pick<RowWords, 'beside' | 'besideTone'> {
+  if (role === 'nurse') return wardBeside(bin)
   const below = bin.lastCount !== null && bin.reorderPoint !== null && !bin.states.includes('count-first')
   return { beside: gaugeWords.beside(binFigures(bin)), besideTone: below ? 'below' : 'plain' }
 }
@@ -70,8 +70,8 @@ function rightOf(bin: Bin, role: Role, at: Moment): string | null {
   if (bin.held > 0) return gaugeWords.held(bin.held)
   if (bin.states.includes('count-overdue')) return ageWords(bin, at)
   if (role === 'nurse') {
-    if (bin.states.includes('below') || bin.lastCount === null) return null
-    return bin.onOrder > 0 ? dueWords(bin, at) : 'enough'
+    if (bin.lastCount === null) return null
+    return dueCaption(bin, at) ?? (bin.states.includes('below') ? null : 'enough')
   }
   if (bin.onOrder > 0) return gaugeWords.onOrder(bin.onOrder)
   return overLine(bin)
@@ -90,7 +90,7 @@ export function rowWords(bin: Bin, role: Role, at: Moment, more: { waiting?: boo
     name: bin.item?.name ?? 'nothing assigned',
     vital: isVital(bin),
     left: leftOf(bin, role, at),
-    ...besideOf(bin, role, at),
+    ...besideOf(bin, role),
     right,
     rightTone: more.waiting ? 'on-phone' : 'plain',
     onHand: bin.lastCount === null ? null : quantity(bin.onHand),

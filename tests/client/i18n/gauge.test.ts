@@ -44,7 +44,7 @@ describe('a row, by role', () => {
       'nurse',
       at,
     )
-    expect(coming.beside).toBe('empty, on its way, Fri')
+    expect(coming).toMatchObject({ beside: 'empty', right: 'due Fri' })
   })
 
   it('tells the coordinator how many under and what is coming to an empty place', () => {
