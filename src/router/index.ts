@@ -8,7 +8,6 @@ export function makeRouter(session: ReturnType<typeof useSessionStore>): Router 
   const router = createRouter({
     history: createWebHistory(),
     routes,
-    scrollBehavior: (to, from, saved) => saved ?? (to.path === from.path ? undefined : { top: 0 }),
   })
   router.beforeEach(async (to) => {
     await session.restore()
