@@ -8,7 +8,7 @@ import { marker } from './history-load.ts'
 import { lineIds, writeOrders } from './orders-load.ts'
 import { readDirectory, stateOf } from './places.ts'
 import { dayMs } from './simulation/days.ts'
-import { demoZone, simulate } from './simulation/simulator.ts'
+import { simulate, windowOf } from './simulation/simulator.ts'
 import type { SimOp, SimWindow } from './simulation/sim-types.ts'
 
 /** Shorter than this nothing is worth simulating. */
@@ -37,14 +37,7 @@ export async function liveOn(db: Db, clock: Clock, span: { began: number; from: 
   let { from } = span
   for (const end of ends) {
     const last = end === to
-    const window = {
-      began: span.began,
-      zone: demoZone,
-      from,
-      to: end,
-      last,
-      withStories: last && end - from >= storyMs,
-    }
+    const window = windowOf({ began: span.began, from, to: end }, { last, withStories: last && end - from >= storyMs })
     const made = await inTransaction(db, (tx) => livePiece(tx, clock, window, touched))
     await writeDevices(db, made)
     from = end

@@ -47,9 +47,7 @@ export async function settleWorklist(db: Db, clock: Clock, settling: Settling): 
 }
 
 const isStory = ({ plan }: Place): boolean =>
-  [story.emptyVital, story.smallShelf, story.reviewThisWeek].some(
-    (s) => s.room === plan.room.code && s.item === plan.item.code,
-  )
+  plan.room.code === story.emptyVital.room && plan.item.code === story.emptyVital.item
 
 async function orderSome(tx: Tx, known: Directory, { to, touched }: Settling): Promise<void> {
   const drafted = await binsInDrafts(tx)

@@ -15,23 +15,41 @@ export interface Day {
   base: number
 }
 
-const origin = DateTime.fromISO('2020-01-01', { zone: 'utc' })
+const origin = DateTime.fromISO('2020-01-01', { zone: 'utc' }).toMillis()
+const known = new Map<string, Day>()
+
+/** A day by its number; kept, because the same few hundred are asked for all the time. */
+function dayOf(ordinal: number, zone: string): Day {
+  const key = `${zone}/${ordinal}`
+  const kept = known.get(key)
+  if (kept) return kept
+  const date = DateTime.fromMillis(origin + ordinal * dayMs, { zone: 'utc' }).toISODate() ?? ''
+  const noon = DateTime.fromISO(`${date}T12:00`, { zone })
+  const day = { date, weekday: noon.weekday, ordinal, base: noon.toMillis() - 12 * hourMs }
+  known.set(key, day)
+  return day
+}
+
+const ordinalOf = (date: string): number =>
+  Math.round((DateTime.fromISO(date, { zone: 'utc' }).toMillis() - origin) / dayMs)
 
 /** The local days that touch the span from `from` to `to` (epoch ms), oldest first. */
 export function daysBetween(from: number, to: number, zone: string): Day[] {
-  const days: Day[] = []
-  const last = DateTime.fromMillis(to, { zone }).startOf('day')
-  for (let day = DateTime.fromMillis(from, { zone }).startOf('day'); day <= last; day = day.plus({ days: 1 })) {
-    const noon = day.set({ hour: 12 })
-    const date = day.toISODate() ?? ''
-    days.push({
-      date,
-      weekday: day.weekday,
-      ordinal: Math.round(DateTime.fromISO(date, { zone: 'utc' }).diff(origin, 'days').days),
-      base: noon.toMillis() - 12 * hourMs,
-    })
+  const first = ordinalOf(localDate(from, zone))
+  const last = ordinalOf(localDate(to, zone))
+  return Array.from({ length: last - first + 1 }, (_, i) => dayOf(first + i, zone))
+}
+
+/** The moment some working days later, at the same hour of the wall clock; for hours from 5 on. */
+export function workingDaysLater(ms: number, days: number, zone: string): number {
+  let day = dayOf(Math.floor((ms - origin) / dayMs) - 1, zone)
+  while (dayOf(day.ordinal + 1, zone).base <= ms) day = dayOf(day.ordinal + 1, zone)
+  const sinceMidnight = ms - day.base
+  for (let left = days; left > 0;) {
+    day = dayOf(day.ordinal + 1, zone)
+    if (day.weekday <= 5) left -= 1
   }
-  return days
+  return day.base + sinceMidnight
 }
 
 /** The moment at which the wall clock shows that hour; from 5 on. Decimal hours: 9.5 is half past nine. */

@@ -1,7 +1,7 @@
 import { workingDaysBetween } from '#shared/replenishment/believed.ts'
 import type { BinPlan } from '../bin-plan.ts'
 import { story, type StoryPlace } from '../story.ts'
-import { dayMs, localDate, type Day } from './days.ts'
+import { dayMs, type Day } from './days.ts'
 import type { Round } from './rounds.ts'
 import type { BinState, SimWindow } from './sim-types.ts'
 import { coordinatorOf, slotsOf, type Slot } from './supply.ts'
@@ -87,10 +87,9 @@ function ending(state: BinState, days: readonly Day[], rounds: readonly Round[],
     const reason = 'Outer packs got wet. Kept apart until infection prevention has looked.'
     return { hold: { at: to - 9 * dayMs, units: story.held.units, reason } }
   }
-  if (is(story.neverKeyed, plan)) return { unkeyed: { from: to - 50 * dayMs, to: to - 28 * dayMs } }
+  if (is(story.neverKeyed, plan)) return { unkeyed: { from: to - 75 * dayMs, to: to - 28 * dayMs } }
   if (is(story.lateBelieved, plan)) {
-    const today = localDate(to, window.zone)
-    const slot = lastSlot(plan, days, (s) => s.expectedOn < today)
+    const slot = lastSlot(plan, days, (s) => s.expectedOn < window.today)
     return slot ? forced(slot, 'late', { isAcknowledged: true, putAwayAt: null }) : {}
   }
   if (isOneOf(story.partReceived, plan)) {
@@ -112,8 +111,7 @@ const forced = (slot: Slot, name: string, more: Omit<ForcedOrder, 'slot' | 'name
 
 /** Its last order was sent long enough ago to be believed no more, and what was left is used up. */
 function emptyVital(plan: BinPlan, days: readonly Day[], window: SimWindow): Partial<Script> {
-  const today = localDate(window.to, window.zone)
-  const slot = lastSlot(plan, days, (s) => workingDaysBetween(s.expectedOn, today) >= hopelesslyLate)
+  const slot = lastSlot(plan, days, (s) => workingDaysBetween(s.expectedOn, window.today) >= hopelesslyLate)
   const gone = { at: window.to - 2.2 * dayMs, units: 0 }
   return slot
     ? { ...forced(slot, 'empty', { isAcknowledged: false, putAwayAt: null }), shelf: gone, noDemandAfter: gone.at }

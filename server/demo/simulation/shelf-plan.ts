@@ -1,4 +1,4 @@
-import { atHour, localDate, type Day } from './days.ts'
+import { atHour, type Day } from './days.ts'
 import { demandTimes } from './demand-times.ts'
 import type { Script } from './ending.ts'
 import { keyed } from './keyed.ts'
@@ -50,7 +50,8 @@ function useAndWaste({ state, days, window }: RunInput, script: Script): ShelfEv
       .filter((at) => at > since && at <= script.noDemandAfter)
       .map((at): ShelfEvent => ({ at, kind: 'use' }))
     const random = keyed('waste', state.plan.code, day.ordinal)
-    return random() < wasteADay ? [...used, { at: atHour(day, 9 + random() * 9), kind: 'waste' }] : used
+    const wastedAt = random() < wasteADay ? atHour(day, 9 + random() * 9) : Infinity
+    return wastedAt <= script.noDemandAfter && wastedAt < Infinity ? [...used, { at: wastedAt, kind: 'waste' }] : used
   })
 }
 
@@ -60,7 +61,7 @@ function walks({ state, rounds }: RunInput, script: Script): ShelfEvent[] {
   return rounds.flatMap((round): ShelfEvent[] => {
     const random = keyed('walk', plan.code, round.id)
     const at = round.at + pace + Math.round(random() * 12_000)
-    const isSkipped = !round.isWhole && random() < skippedPlaces
+    const isSkipped = !round.isWhole && script.shelf === null && random() < skippedPlaces
     return isSkipped || at > script.noCountAfter ? [] : [{ at, kind: 'round', round }]
   })
 }
@@ -96,7 +97,7 @@ function onTheirWay(input: RunInput): ShelfEvent[] {
 
 /** Where the world stops, what should have come on an earlier day has come. */
 export function putAwayBy({ state, window }: RunInput, slot: Slot, at: number): number {
-  const isDue = window.last && slot.expectedOn < localDate(window.to, window.zone)
+  const isDue = window.last && slot.expectedOn < window.today
   if (!isDue || at <= window.to) return at
   return Math.max(state.startAt + 1, Math.min(slot.expectedAt + 4 * hourMs, window.to))
 }

@@ -1,7 +1,7 @@
 import { isBelieved } from '#shared/replenishment/believed.ts'
 import { suggestedPacks } from '#shared/replenishment/suggested-packs.ts'
 import { countOf } from './count-slips.ts'
-import { dayMs, localDate } from './days.ts'
+import { dayMs } from './days.ts'
 import { scriptOf, type ForcedOrder, type Script } from './ending.ts'
 import { keyed, operationId } from './keyed.ts'
 import { longestWalkMs, wardHands, type Round } from './rounds.ts'
@@ -102,7 +102,10 @@ class Shelf {
   }
 
   private count(at: number, round: Round): void {
-    const written = countOf(this.truth, keyed('slip', this.input.state.plan.code, round.id))
+    // Where a story needs the number, it is counted right.
+    const isTold = this.script.shelf !== null && at > this.script.shelf.at
+    const slip = keyed('slip', this.input.state.plan.code, round.id)
+    const written = isTold ? { first: this.truth, corrected: null } : countOf(this.truth, slip)
     const by = { person: round.person, device: round.device }
     const arrives = round.isOffline ? round.at + longestWalkMs : undefined
     const counted = this.write({ type: 'count', quantity: written.first, at, ...by }, arrives)
@@ -114,11 +117,10 @@ class Shelf {
 
   /** The coordinator goes through the list and orders where the position is at the point or under it. */
   private decide(slot: Slot): void {
-    const { state, window } = this.input
+    const { state } = this.input
     const story = this.script.forced?.slot === slot ? this.script.forced : null
     if (this.record === null) return
-    const today = localDate(slot.decidedAt, window.zone)
-    const believed = [...this.open.values()].filter((l) => isBelieved(l.expectedOn, today, false))
+    const believed = [...this.open.values()].filter((l) => isBelieved(l.expectedOn, slot.date, false))
     const position = this.record + believed.reduce((sum, l) => sum + l.units, 0)
     if (!story && (position > state.reorderPoint || this.isPaused(slot))) return
     const { plan, reorderPoint, parLevel } = state
@@ -153,9 +155,11 @@ class Shelf {
       return
     }
     const span = this.script.unkeyed
-    for (const part of putAways(slot, plan.code, packs)) {
+    const parts = putAways(slot, plan.code, packs)
+    for (const part of parts) {
       const at = putAwayBy(this.input, slot, part.at)
-      const isLost = span !== null && at > span.from && at < span.to && !this.lines.some((l) => l.wasUnkeyed)
+      const mayBeLost = parts.length === 1 && span !== null && at > span.from && at < span.to
+      const isLost = mayBeLost && !this.lines.some((l) => l.wasUnkeyed)
       if (isLost) {
         wanted.wasUnkeyed = true
         wanted.cancelledAt = workingDaysLater(at, 4)

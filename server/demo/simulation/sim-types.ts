@@ -9,6 +9,8 @@ export interface SimWindow {
   /** When the hospital's history begins. */
   began: number
   zone: string
+  /** The hospital's own date at `to`. */
+  today: string
   /** The world stops here: rounds are finished and deliveries that are due have come. */
   last: boolean
   /** Long enough for the stories to be told: see `ending.ts`. */

@@ -1,6 +1,6 @@
 import type { BinPlan } from '../bin-plan.ts'
 import { hospital, rooms, suppliers } from '../catalogue/places.ts'
-import { daysBetween, type Day } from './days.ts'
+import { daysBetween, localDate, type Day } from './days.ts'
 import { cancelledAt, ordersOf } from './orders.ts'
 import { roundsOf } from './rounds.ts'
 import { liveShelf, type WantedLine } from './shelf.ts'
@@ -80,5 +80,10 @@ function byBin(transfers: readonly PlannedTransfer[]): Map<string, PlannedTransf
   return groups
 }
 
-/** Zone of the demo hospital, for those who make windows. */
 export const demoZone = hospital.timeZone
+
+/** A window of the demo hospital's life. */
+export const windowOf = (
+  span: Pick<SimWindow, 'from' | 'to' | 'began'>,
+  end: Pick<SimWindow, 'last' | 'withStories'>,
+): SimWindow => ({ ...span, ...end, zone: demoZone, today: localDate(span.to, demoZone) })

@@ -2,7 +2,7 @@ import { arrivalOf, nextSlot, type OrderCalendar } from '#shared/calendar/order-
 import { calendarOf } from '../../catalogue/calendar.service.ts'
 import type { DemoRoom } from '../catalogue/places.ts'
 import { hospital, suppliers } from '../catalogue/places.ts'
-import { atHour, dayMs, daysBetween, localDate, type Day } from './days.ts'
+import { atHour, localDate, workingDaysLater as laterBy, type Day } from './days.ts'
 import { keyed } from './keyed.ts'
 
 const minuteMs = 60_000
@@ -20,6 +20,8 @@ export interface Slot {
   expectedOn: string
   expectedAt: number
   ordinal: number
+  /** The local date of the list. */
+  date: string
 }
 
 const calendars = new Map(
@@ -64,18 +66,25 @@ export function slotsOf(supplierCode: string, coordinator: string, days: readonl
       if (random() < missedDays && !all) return []
       const cutOff = atHour(day, hour + minute / 60)
       const decidedAt = cutOff - Math.round((25 + random() * 70) * minuteMs)
-      return [slotAt(supplierCode, coordinator, cutOff, decidedAt, day.ordinal)]
+      return [slotAt(supplierCode, coordinator, cutOff, decidedAt, day)]
     })
 }
 
-function slotAt(supplier: string, coordinator: string, cutOff: number, decidedAt: number, ordinal: number): Slot {
+function slotAt(
+  supplier: string,
+  coordinator: string,
+  cutOff: number,
+  decidedAt: number,
+  day: Pick<Day, 'ordinal' | 'date'>,
+): Slot {
   return {
     supplier,
     coordinator,
     cutOff,
     decidedAt,
     sentAt: decidedAt + 4 * minuteMs,
-    ordinal,
+    ordinal: day.ordinal,
+    date: day.date,
     ...expectation(supplier, cutOff),
   }
 }
@@ -83,7 +92,7 @@ function slotAt(supplier: string, coordinator: string, cutOff: number, decidedAt
 /** The order day that an order sent at that moment belongs to. */
 export function slotOfOrder(supplier: string, coordinator: string, sentAt: number): Slot {
   const cutOff = nextSlot(calendarOfSupplier(supplier), sentAt)
-  return slotAt(supplier, coordinator, cutOff, sentAt, 0)
+  return slotAt(supplier, coordinator, cutOff, sentAt, { ordinal: 0, date: '' })
 }
 
 /** Working days by which a delivery comes late, with how often; central stores are close by. */
@@ -102,15 +111,19 @@ const delays: Record<'stores' | 'outside', [share: number, workingDays: number][
 }
 
 /** The moment some working days later, at the same hour of the wall clock. */
-export function workingDaysLater(ms: number, days: number): number {
-  const ahead = daysBetween(ms, ms + (days * 2 + 4) * dayMs, hospital.timeZone)
-  const hour = (ms - ahead[0]!.base) / hourMs
-  const working = ahead.slice(1).filter((d) => d.weekday <= 5)
-  return days === 0 ? ms : atHour(working[days - 1]!, hour)
-}
+export const workingDaysLater = (ms: number, days: number): number => laterBy(ms, days, hospital.timeZone)
+
+const arrivals = new Map<string, number>()
 
 /** When the delivery of a slot stands in the building. */
 export function arrivedAt(slot: Slot): number {
+  const key = `${slot.supplier}/${slot.coordinator}/${slot.cutOff}`
+  const known = arrivals.get(key) ?? drawArrival(slot)
+  arrivals.set(key, known)
+  return known
+}
+
+function drawArrival(slot: Slot): number {
   const random = keyed('delivery', slot.supplier, slot.coordinator, slot.cutOff)
   const kind = suppliers.find((s) => s.code === slot.supplier)?.kind ?? 'outside'
   const draw = random()
