@@ -18,11 +18,21 @@ function fromParser(error: unknown): unknown {
   return error
 }
 
+/** Express and its parts mark what the caller did wrong with a 4xx status: a malformed address, a file not there. */
+function fromExpress(error: unknown): unknown {
+  if (!(error instanceof Error) || error instanceof Problem || !('status' in error)) return error
+  if (error.status === 404) return problem('not-found', 'There is no such address.')
+  if (typeof error.status === 'number' && error.status >= 400 && error.status < 500) {
+    return problem('unreadable-body', 'The request cannot be read.')
+  }
+  return error
+}
+
 /** The last word on every failed call: RFC 9457, nothing of the inside, the request number for 500s. */
 export function problemHandler(log: Logger) {
   return (error: unknown, req: Request, res: Response, next: NextFunction): void => {
     if (res.headersSent) return next(error)
-    const known = toProblem(fromParser(error))
+    const known = toProblem(fromExpress(fromParser(error)))
     const id = String((req as { id?: unknown }).id ?? '')
     const answer = known instanceof Problem ? known : problem('internal', `Nothing was changed. Request ${id}.`)
     if (answer.status >= 500) log.error({ err: known, id, path: req.path }, answer.code)

@@ -54,7 +54,7 @@ export function clientFiles(dir: string): Router {
   router.get('/{*path}', (req, res, next) => {
     if (/^\/(api|healthz|readyz)(\/|$)/.test(req.path) || /\.[a-z0-9]{2,12}$/i.test(req.path)) return next()
     res.set('Cache-Control', 'no-cache')
-    res.sendFile(join(dir, 'index.html'))
+    res.sendFile('index.html', { root: dir })
   })
   return router
 }

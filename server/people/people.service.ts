@@ -142,7 +142,7 @@ export async function askReset(tx: Tx, clock: Clock, email: string, baseUrl: str
       '',
       'somebody asked for a new password for your account. If it was you, open this link within an hour:',
       '',
-      `${baseUrl}/new-password/${token}`,
+      `${baseUrl}/password-reset/${token}`,
       '',
       'If it was not you, do nothing: your password stays as it is.',
     ].join('\n'),

@@ -1,4 +1,4 @@
-import { and, asc, desc, eq, gt, inArray, sql } from 'drizzle-orm'
+import { and, asc, desc, eq, gt, inArray, lte, max, sql } from 'drizzle-orm'
 import { items, supplyAgreements, suppliers } from '../catalogue/catalogue.tables.ts'
 import type { Db, Reader, Tx } from '../db/client.ts'
 import { demandIntervals, policies, policyRuns } from './policy.tables.ts'
@@ -75,19 +75,20 @@ export async function listMovedSince(db: Reader, since: Date) {
     .orderBy(asc(policies.createdAt), asc(policies.id))
 }
 
-/** The figure in force before a moment, per bin. */
+/** The figure in force at a moment, per bin: that of the newest row written by then. */
 export async function listPointsBefore(db: Reader, binIds: number[], before: Date) {
   if (binIds.length === 0) return []
-  const newest = db
-    .select({ id: sql<number>`max(${policies.id})`.as('id') })
+  const newest = await db
+    .select({ id: max(policies.id) })
     .from(policies)
-    .where(and(inArray(policies.binId, binIds), sql`${policies.createdAt} <= ${before}`))
+    .where(and(inArray(policies.binId, binIds), lte(policies.createdAt, before)))
     .groupBy(policies.binId)
-    .as('newest')
+  const ids = newest.flatMap((row) => (row.id === null ? [] : [row.id]))
+  if (ids.length === 0) return []
   return db
     .select({ binId: policies.binId, reorderPoint: policies.reorderPoint })
     .from(policies)
-    .innerJoin(newest, eq(newest.id, policies.id))
+    .where(inArray(policies.id, ids))
 }
 
 // Intervals -------------------------------------------------------------------------------------------------------
@@ -117,6 +118,29 @@ export async function countIntervals(db: Reader, binIds: number[]) {
     .from(demandIntervals)
     .where(inArray(demandIntervals.binId, binIds))
     .groupBy(demandIntervals.binId)
+}
+
+/**
+ * Per bin under its present assignment: delivery cycles on record (one per put-away) and those in which a count found
+ * the shelf empty. Entries taken back are left out.
+ */
+export async function countCycles(
+  db: Reader,
+  binIds: number[],
+): Promise<{ binId: number; cycles: number; found: number }[]> {
+  if (binIds.length === 0) return []
+  const [rows] = (await db.execute(sql`
+    SELECT bin_id AS binId, MAX(cycle) AS cycles, COUNT(DISTINCT IF(type = 'count' AND quantity = 0, cycle, NULL)) AS found
+    FROM (
+      SELECT m.bin_id, m.type, m.quantity,
+        SUM(m.type = 'receipt') OVER (PARTITION BY m.bin_id ORDER BY m.effective_at, m.id) AS cycle
+      FROM movements m
+      JOIN bin_levels l ON l.bin_id = m.bin_id AND l.assignment_id = m.assignment_id
+      LEFT JOIN movements w ON w.target_op_id = m.op_id AND w.type = 'withdraw'
+      WHERE m.type IN ('count', 'receipt') AND w.id IS NULL AND m.bin_id IN ${binIds}
+    ) standing
+    GROUP BY bin_id`)) as unknown as [{ binId: number; cycles: string; found: string }[]]
+  return rows.map((r) => ({ binId: Number(r.binId), cycles: Number(r.cycles), found: Number(r.found) }))
 }
 
 // Supply ----------------------------------------------------------------------------------------------------------

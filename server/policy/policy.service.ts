@@ -259,6 +259,7 @@ export async function warningsOf(db: Reader): Promise<Map<number, string[]>> {
 }
 
 export const intervalCounts = repo.countIntervals
+export const cycleCounts = repo.countCycles
 export const currentPolicy = repo.findCurrent
 export const policyHistory = repo.listHistory
 export const storedIntervals = repo.listIntervals

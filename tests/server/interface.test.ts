@@ -86,6 +86,7 @@ describe('every route', () => {
     expect(reply.get('Content-Security-Policy')).toContain("default-src 'self'")
     expect(reply.get('Permissions-Policy')).toContain('camera=(self)')
     expect((await supertest(app.app).get('/api/v1/nowhere')).body.code).toBe('not-found')
+    expect((await supertest(app.app).get('/api/v1/bins/%E0%A4%A')).status).toBe(400)
     expect((await supertest(app.app).get('/healthz')).body).toEqual({ status: 'alive' })
     expect((await supertest(app.app).get('/readyz')).body).toEqual({ status: 'ready' })
   })

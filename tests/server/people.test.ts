@@ -99,7 +99,7 @@ describe('passwords', () => {
     expect([known.status, known.body]).toEqual([202, unknown.body])
     const mails = await app.database.db.select().from(mailOutbox)
     expect(mails).toHaveLength(1)
-    const token = /new-password\/(\S+)/.exec(mails[0]!.body)![1]!
+    const token = /password-reset\/(\S+)/.exec(mails[0]!.body)![1]!
     expect((await app.anyone.post(`/password-resets/${token}`, { newPassword: 'nurse' })).status).toBe(422)
     expect((await app.anyone.post(`/password-resets/${token}`, { newPassword: 'fresh and long' })).status).toBe(204)
     expect((await app.anyone.post(`/password-resets/${token}`, { newPassword: 'fresh and long' })).body.code).toBe(

@@ -154,6 +154,20 @@ describe('a bin’s policy', () => {
     expect((await policyOf()).reorderPoint).toBe(beside.computed!.reorderPoint)
   })
 
+  it('is listed for the reviewer with what happened: delivery cycles, and those found empty', async () => {
+    await enter({ type: 'count', binId: bin.id, quantity: 0 })
+    const reviewer = await app.as('reviewer')
+    const row = (await reviewer.get('/review?show=vital')).body.items.find((r: Bin) => r.id === bin.id)
+    expect(row).toMatchObject({ target: 0.995, source: 'class', runOuts: { found: 1, cycles: 9 }, intervals: 9 })
+  })
+
+  it('tells the reviewer which points moved lately, and why', async () => {
+    const reviewer = await app.as('reviewer')
+    const { moved } = (await reviewer.get('/today')).body.reviewer
+    expect(moved).toMatchObject([{ bin: { id: bin.id }, from: expect.any(Number), to: expect.any(Number) }])
+    expect((await reviewer.get('/review?show=moved')).body.items.map((r: Bin) => r.id)).toEqual([bin.id])
+  })
+
   it('equals its projections after a rebuild', async () => {
     await app.runJobs()
     const said: string[] = []
