@@ -18,7 +18,7 @@ const hospital: Place = { name: 'hospital', icon: 'hospital' }
 export const placesOf: Record<Role, readonly Place[]> = {
   nurse: [today, count, rooms],
   coordinator: [today, count, rooms, restock, review, hospital],
-  reviewer: [today, review, rooms, hospital],
+  reviewer: [today, review, rooms],
   administrator: [today, rooms, hospital],
 }
 

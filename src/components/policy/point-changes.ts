@@ -1,8 +1,12 @@
 import type { BinPolicy } from '#shared/contracts/policy.ts'
 import type { PointChange } from './level-chart.ts'
 
-/** The reorder points known of a bin, oldest first: the one in force, from the day it took over. */
+/** The reorder points that were in force, oldest first; stretches without one are left out. */
 export function pointChanges(policy: BinPolicy): PointChange[] {
-  if (policy.reorderPoint === null) return []
-  return [{ at: policy.since ? Date.parse(policy.since) : 0, value: policy.reorderPoint }]
+  return [...policy.history]
+    .reverse()
+    .flatMap(({ reorderPoint, since }) =>
+      reorderPoint === null ? [] : [{ at: Date.parse(since), value: reorderPoint }],
+    )
+    .filter((change, i, all) => i === 0 || change.value !== all[i - 1]?.value)
 }

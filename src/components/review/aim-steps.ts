@@ -29,6 +29,7 @@ export function aimLevels(floor: number, ceiling: number, present: number, more:
 /**
  * Works every step out with the policy's own input; nothing is sent anywhere.
  *
+ * @param price of one unit of use, null where none is known
  * @param reorderPoint the shared function, handed in because it is loaded only when somebody changes an aim
  */
 export function aimSteps(
@@ -36,8 +37,8 @@ export function aimSteps(
   input: PolicyInput,
   levels: readonly number[],
   present: { level: number; reorderPoint: number | null },
+  price: number | null,
 ): AimStep[] {
-  const price = input.order?.unitCost ?? null
   return levels.flatMap((level) => {
     const result = reorderPoint({ ...input, serviceLevel: level })
     if (result.reorderPoint === null || result.safetyStock === null) return []

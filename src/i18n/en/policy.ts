@@ -53,6 +53,23 @@ const warningWords: Record<string, string> = {
   floor: 'A fixed minimum, set by a reviewer, holds it up.',
 }
 
+const causeWords: Record<string, string> = {
+  count: 'after a count',
+  'service-level': 'the aim changed',
+  calendar: 'deliveries or order days changed',
+  rhythm: 'the counting rhythm changed',
+  mode: 'the way the room is kept changed',
+  entered: 'entered by a person',
+  accepted: 'a person agreed to the worked-out figure',
+  nightly: 'worked out again at night',
+}
+
+const waitWords: Record<string, string> = {
+  'three-counts': 'It is lower, so it waits for three counts in a row that agree.',
+  'larger-change': 'The difference is small, so nothing moves yet.',
+  'a-person': 'It stands below what a person entered, so a person has to agree.',
+}
+
 const methodWords: Record<string, string> = {
   'negative-binomial-mixture': 'uneven use in whole units, with an allowance for few counts',
   student: 'smooth use, with an allowance for few counts',
@@ -159,8 +176,14 @@ export const policyWords = {
   moved: 'How the point moved',
   since: (when: string): string => `In force since ${when}`,
   pending: (point: number): string => `Works out at ${quantity(point)} now`,
-  waits: (what: string): string => `It waits for ${what}.`,
-  cause: (what: string, units: number): string => `${what}: ${signed(units)}`,
+  waits: (code: string): string => waitWords[code] ?? `It waits: ${code}.`,
+  because: (code: string): string => causeWords[code] ?? code,
+  accept: 'Agree to it',
+  accepted: 'Agreed. The worked-out figure is in force.',
+  moves: (from: number | null | undefined, to: number | null): string =>
+    from == null ? (to === null ? '—' : quantity(to)) : `${quantity(from)} → ${to === null ? '—' : quantity(to)}`,
+  older: 'Older changes',
+  cause: (what: string, units: number): string => `${causeWords[what] ?? what}: ${signed(units)}`,
   aim: (level: number): string => `Aim: ${odds(level)} (${percent(level)})`,
   reviewBy: (when: string): string => `review by ${when}`,
   reason: 'Reason',

@@ -32,7 +32,10 @@ function likelyOut(row: Pick<WorklistRow, 'outBy' | 'states'>, at: Moment): stri
   const from = dueShort(early, today)
   if (!late) return `from ${from}`
   const to = dueShort(late, today)
-  return from === to ? from : `${from} to ${to}`
+  if (from === to) return from
+  // "8 to 14 Dec" where both days name the same month.
+  const month = /^[0-9]+ (.+)$/.exec(to)?.[1]
+  return month && from.endsWith(` ${month}`) ? `${from.slice(0, -month.length - 1)} to ${to}` : `${from} to ${to}`
 }
 
 const nextWords = (row: Pick<WorklistRow, 'nextArrival'>, at: Moment): string | null =>
@@ -92,7 +95,7 @@ export const replenishmentWords = {
   noDraft: 'No draft yet',
   noDraftWhat: 'Choose a row to see why, then add it. A draft is kept until you send or cancel it.',
   add: (n: number, unit: string): string => `Add ${counted(n, unit)}`,
-  added: (number: string): string => `in draft ${number}`,
+  added: (number: string): string => `in ${number}`,
   takeOut: 'Take out',
   howMany: (item: string): string => `Packs of ${item}`,
   sum: (lines: number, packs: number): string => `${counted(lines, 'item')}, ${counted(packs, 'pack')}`,

@@ -8,7 +8,7 @@ const input = {
   leadTime: { meanDays: 2 },
   reviewPeriodDays: 1,
   serviceLevel: 0.98,
-  order: { packSize: 5, unitCost: 3 },
+  order: { packSize: 5 },
   capacity: 100,
 }
 
@@ -19,7 +19,7 @@ describe('aims', () => {
   })
 
   it('works each step out exactly as the policy would, with the difference to now', () => {
-    const steps = aimSteps(reorderPoint, input, [0.95, 0.98, 0.999], { level: 0.98, reorderPoint: 25 })
+    const steps = aimSteps(reorderPoint, input, [0.95, 0.98, 0.999], { level: 0.98, reorderPoint: 25 }, 3)
     for (const step of steps) {
       const direct = reorderPoint({ ...input, serviceLevel: step.level })
       expect(step.reorderPoint).toBe(direct.reorderPoint)
@@ -31,15 +31,12 @@ describe('aims', () => {
   })
 
   it('says when the shelf cuts a step', () => {
-    const [high] = aimSteps(reorderPoint, { ...input, capacity: 20 }, [0.999], { level: 0.98, reorderPoint: 15 })
+    const [high] = aimSteps(reorderPoint, { ...input, capacity: 20 }, [0.999], { level: 0.98, reorderPoint: 15 }, 3)
     expect(high).toMatchObject({ cut: true, reorderPoint: 15 })
   })
 
   it('has no cost without a price', () => {
-    const [step] = aimSteps(reorderPoint, { ...input, order: { packSize: 5 } }, [0.99], {
-      level: 0.98,
-      reorderPoint: 25,
-    })
+    const [step] = aimSteps(reorderPoint, input, [0.99], { level: 0.98, reorderPoint: 25 }, null)
     expect(step?.cost).toBeNull()
   })
 
