@@ -16,7 +16,8 @@ interface Parts {
 
 /** Everything a calculation is made from, kept whole with it: computing it again from this gives it exactly. */
 export function policyInput({ view, learned, protection, supply, aim, money }: Parts): PolicyInput {
-  const priced = money.orderingCost > 0 && supply?.price != null && supply.price > 0
+  const unitCost = supply?.price != null && supply.price > 0 ? supply.price : null
+  const weighed = unitCost !== null && money.orderingCost > 0
   return {
     intervals: learned.forPolicy,
     leadTime: { meanDays: protection.leadMeanDays, sdDays: supply?.supplier?.leadTimeSd ?? 0 },
@@ -26,9 +27,8 @@ export function policyInput({ view, learned, protection, supply, aim, money }: P
     method: 'auto',
     order: {
       packSize: view.bin.packSize,
-      ...(priced
-        ? { orderingCost: money.orderingCost, unitCost: supply.price, holdingRatePerYear: money.holdingRatePerYear }
-        : {}),
+      ...(unitCost === null ? {} : { unitCost }),
+      ...(weighed ? { orderingCost: money.orderingCost, holdingRatePerYear: money.holdingRatePerYear } : {}),
     },
     capacity: view.bin.capacity,
     shelfLifeDays: supply?.shelfLifeDays ?? null,
