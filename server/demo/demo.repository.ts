@@ -15,10 +15,12 @@ export type NewLine = typeof orderLines.$inferInsert
 /** Devices of the simulated people; every other device is a real person's. */
 export const demoDevices = 'tg-%'
 
-/** Runs `work` while no other start of the same database can. */
+/** Runs `work` while no other start of the same database can. @throws {Error} when another one takes minutes */
 export async function alone<T>(db: Db, work: () => Promise<T>): Promise<T> {
   return db.transaction(async (tx) => {
-    await tx.execute(sql`SELECT GET_LOCK('brimline-first-data', 300)`)
+    const [rows] = await tx.execute(sql`SELECT GET_LOCK('brimline-first-data', 300) AS got`)
+    const isMine = (rows as unknown as { got: number | null }[])[0]?.got === 1
+    if (!isMine) throw new Error('Another start is still loading this database. Try again in a few minutes.')
     try {
       return await work()
     } finally {

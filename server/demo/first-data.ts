@@ -93,12 +93,21 @@ async function bringUp(db: Db, clock: Clock, say: Say): Promise<void> {
   if (before.livedTo === null) await loadFirstHistory(db, clock, before, say)
   const { began, livedTo, settledTo } = await progressOf(db)
   const from = livedTo ?? before.to
-  const hasLived = await liveOn(db, clock, { began, from })
-  if (hasLived) say('The demo hospital has lived on to this moment.')
+  await tryToLiveOn(db, clock, { began, from }, say)
   const now = (await progressOf(db)).livedTo ?? from
   if (settledTo === now) return
   await computeDemoPolicies(db, clock, say)
   const since = settledTo ?? began
   const touched = await listTouched(db, new Date(since))
   await settleWorklist(db, clock, { to: new Date(now), touched, isShort: now - since < shortAbsenceMs })
+}
+
+/** People may have turned the demo inside out; it then stays as they left it, whole, rather than stop the start. */
+async function tryToLiveOn(db: Db, clock: Clock, span: { began: number; from: number }, say: Say): Promise<void> {
+  try {
+    if (await liveOn(db, clock, span)) say('The demo hospital has lived on to this moment.')
+  } catch (error) {
+    const why = error instanceof Error ? error.message : String(error)
+    say(`The demo hospital stands as it was left; it could not live on: ${why.slice(0, 300)}`)
+  }
 }

@@ -53,15 +53,22 @@ export async function loadFirstHistory(db: Db, clock: Clock, first: First, say: 
 
 const lanes = 3
 
-/** Several at a time: while the database writes one, the next is made. */
+/** Several at a time: while the database writes one, the next is made. After a failure nothing new is begun. */
 async function inLanes<T>(list: readonly T[], work: (one: T) => Promise<void>): Promise<void> {
   let next = 0
   const lane = async (): Promise<void> => {
     while (next < list.length) {
       const one = list[next]!
       next += 1
-      await work(one)
+      try {
+        await work(one)
+      } catch (error) {
+        next = list.length
+        throw error
+      }
     }
   }
-  await Promise.all(Array.from({ length: lanes }, lane))
+  const ended = await Promise.allSettled(Array.from({ length: lanes }, lane))
+  const failed = ended.find((end) => end.status === 'rejected')
+  if (failed) throw failed.reason
 }

@@ -27,11 +27,13 @@ export interface Directory {
 export async function readDirectory(db: Reader, clock: Clock): Promise<Directory> {
   const views = await viewBins(db, momentOf(clock, demoZone), { roomIds: null, retired: false })
   const byCode = new Map(views.map((v) => [v.row.code, v]))
+  const { items } = await listSuppliers(db, { page: 1, pageSize: 500, retired: 'no' })
+  const suppliers = new Map(items.map((s) => [s.code, Number(s.id)]))
   const places = new Map<string, Place>()
   for (const plan of binPlans()) {
     const view = byCode.get(plan.code)
     if (!view || view.row.itemCode !== plan.item.code || view.bin.packSize !== plan.item.unitsPerOrder) continue
-    if (view.row.assignmentId === null || view.row.itemId === null) continue
+    if (view.row.assignmentId === null || view.row.itemId === null || !suppliers.has(plan.item.supplier)) continue
     places.set(plan.code, {
       plan,
       view,
@@ -40,11 +42,10 @@ export async function readDirectory(db: Reader, clock: Clock): Promise<Directory
       itemId: view.row.itemId,
     })
   }
-  const { items: suppliers } = await listSuppliers(db, { page: 1, pageSize: 500, retired: 'no' })
   return {
     places,
     staff: new Map((await listStaff(db)).map((s) => [s.staffCode, s])),
-    suppliers: new Map(suppliers.map((s) => [s.code, Number(s.id)])),
+    suppliers,
   }
 }
 

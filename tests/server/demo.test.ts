@@ -47,7 +47,7 @@ const cutAt =
 beforeAll(async () => {
   database = await createTestDatabase()
   const load = (say: (line: string) => void): Promise<string[]> => ensureFirstData(database.db, clock, env(), true, say)
-  await expect(load(cutAt('reorder points'))).rejects.toThrow(Cut)
+  await expect(load(cutAt('places have their history'))).rejects.toThrow(Cut)
   signIns = await load((line) => said.push(line))
   views = await allViews()
 }, 60_000)

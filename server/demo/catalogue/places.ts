@@ -45,7 +45,7 @@ export const rooms: DemoRoom[] = [
   { key: 'B1', code: 'BIR-1', name: 'Birch supply room', ward: 'BIR', countEveryDays: 4, mode: 'calculated' },
   { key: 'C1', code: 'CED-1', name: 'Cedar supply room', ward: 'CED', countEveryDays: 2, mode: 'calculated' },
   { key: 'C2', code: 'CED-2', name: 'Cedar breathing store', ward: 'CED', countEveryDays: 4, mode: 'calculated' },
-  { key: 'E1', code: 'ELD-1', name: 'Elder supply room', ward: 'ELD', countEveryDays: 2, mode: 'calculated' },
+  { key: 'E1', code: 'ELD-1', name: 'Elder supply room', ward: 'ELD', countEveryDays: 3, mode: 'calculated' },
   { key: 'H1', code: 'HAZ-1', name: 'Hazel supply room', ward: 'HAZ', countEveryDays: 5, mode: 'beside' },
   { key: 'R1', code: 'ROW-1', name: 'Rowan theatre store', ward: 'ROW', countEveryDays: 7, mode: 'as-before' },
 ]
