@@ -130,7 +130,7 @@ export type OpenLine = Awaited<ReturnType<typeof listOpenLines>>[number]
 export async function listOverflow(db: Reader, mainIds: number[]) {
   if (mainIds.length === 0) return []
   return db
-    .select({ binId: bins.id, mainId: bins.overflowOf, onHand: binLevels.onHand })
+    .select({ binId: bins.id, mainId: bins.overflowOf, onHand: binLevels.onHand, assignmentId: binLevels.assignmentId })
     .from(bins)
     .innerJoin(binLevels, eq(binLevels.binId, bins.id))
     .where(and(inArray(bins.overflowOf, mainIds), isNull(bins.retiredAt)))

@@ -24,6 +24,14 @@ export interface BinView {
   row: BinRow
   openLines: OpenLine[]
   facts: BinFacts
+  /** Its overflow places, whose stock is part of its own. */
+  overflow: OverflowPlace[]
+}
+
+interface OverflowPlace {
+  binId: number
+  assignmentId: number | null
+  onHand: number
 }
 
 interface Moment {
@@ -50,7 +58,7 @@ export async function viewBins(db: Reader, moment: Moment, filter: BinFilter): P
   return rows.map((row) => toView(row, lines.get(row.id) ?? [], overflow.get(row.id) ?? [], moment))
 }
 
-function toView(row: BinRow, openLines: OpenLine[], overflow: { onHand: number }[], moment: Moment): BinView {
+function toView(row: BinRow, openLines: OpenLine[], overflow: OverflowPlace[], moment: Moment): BinView {
   const mine = openLines.filter((l) => l.assignmentId === row.assignmentId && openUnits(l) > 0)
   const believed = mine.filter((l) => isBelieved(l.expectedOn, moment.today, l.confirmedAt !== null))
   const onOrder = believed.reduce((sum, l) => sum + openUnits(l), 0)
@@ -76,7 +84,7 @@ function toView(row: BinRow, openLines: OpenLine[], overflow: { onHand: number }
     countEveryDays: row.countEveryDays,
   }
   const parLevel = isOverflow ? null : row.policyId === null ? row.enteredPar : row.parLevel
-  return { bin: toBin(row, facts, parLevel, believed, arrived, raw, moment.now), row, openLines: mine, facts }
+  return { bin: toBin(row, facts, parLevel, believed, arrived, raw, moment.now), row, openLines: mine, facts, overflow }
 }
 
 function toBin(

@@ -201,9 +201,15 @@ export async function markBinsChanged(tx: Tx, binIds: number[], version: number)
   if (binIds.length) await tx.update(binLevels).set({ roomVersion: version }).where(inArray(binLevels.binId, binIds))
 }
 
+/** Rooms of bins and of the main places of overflow bins, whose stock changes with theirs. */
 export async function roomsOfBins(db: Reader, binIds: number[]): Promise<{ binId: number; roomId: number }[]> {
   if (binIds.length === 0) return []
-  return db.select({ binId: bins.id, roomId: bins.roomId }).from(bins).where(inArray(bins.id, binIds))
+  const rows = await db
+    .select({ binId: bins.id, roomId: bins.roomId, overflowOf: bins.overflowOf })
+    .from(bins)
+    .where(inArray(bins.id, binIds))
+  const mains = rows.flatMap((r) => (r.overflowOf === null ? [] : [{ binId: r.overflowOf, roomId: r.roomId }]))
+  return [...rows, ...mains]
 }
 
 export async function readRoomVersion(db: Reader, roomId: number) {

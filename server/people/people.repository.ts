@@ -1,4 +1,5 @@
 import { and, asc, count, eq, gt, inArray, isNotNull, isNull, like, lt, ne, or, sql, type SQL } from 'drizzle-orm'
+import { rooms } from '../catalogue/catalogue.tables.ts'
 import type { Reader, Tx } from '../db/client.ts'
 import type { Role } from '#shared/contracts/contract.ts'
 import { passwordResets, personNames, sessions, signInAttempts, userRooms, users } from './people.tables.ts'
@@ -34,11 +35,11 @@ type Row = Awaited<ReturnType<typeof base>>[number]
 
 async function withRooms(db: Reader, rows: Row[]): Promise<Person[]> {
   const scoped = rows.filter((r) => !r.isAllRooms).map((r) => r.id)
-  const rooms = scoped.length ? await db.select().from(userRooms).where(inArray(userRooms.userId, scoped)) : []
+  const own = scoped.length ? await db.select().from(userRooms).where(inArray(userRooms.userId, scoped)) : []
   return rows.map((row) => ({
     ...row,
     name: row.name ?? 'Former colleague',
-    roomIds: row.isAllRooms ? null : rooms.filter((r) => r.userId === row.id).map((r) => r.roomId),
+    roomIds: row.isAllRooms ? null : own.filter((r) => r.userId === row.id).map((r) => r.roomId),
   }))
 }
 
@@ -81,6 +82,13 @@ export async function namesOf(db: Reader, ids: number[]): Promise<Map<number, { 
   if (ids.length === 0) return new Map()
   const rows = await base(db).where(inArray(users.id, [...new Set(ids)]))
   return new Map(rows.map((r) => [r.id, { name: r.name ?? 'Former colleague', role: r.role }]))
+}
+
+/** Rooms among the given ids that exist. */
+export async function existingRooms(db: Reader, ids: number[]): Promise<Set<number>> {
+  if (ids.length === 0) return new Set()
+  const rows = await db.select({ id: rooms.id }).from(rooms).where(inArray(rooms.id, ids))
+  return new Set(rows.map((r) => r.id))
 }
 
 export async function listActiveByRole(db: Reader, role: Role): Promise<Person[]> {

@@ -13,6 +13,7 @@ import {
   countPeople,
   deleteExpired,
   deleteSessionsOf,
+  existingRooms,
   findPerson,
   findPersonBySignIn,
   insertPerson,
@@ -184,6 +185,15 @@ interface UserFields {
   password: string
 }
 
+async function checkedRooms(tx: Tx, roomIds: string[] | null): Promise<number[] | null> {
+  if (roomIds === null) return null
+  const ids = roomIds.map(Number)
+  const known = await existingRooms(tx, ids)
+  const wrong = ids.findIndex((id) => !known.has(id))
+  if (wrong >= 0) throw fieldProblem(`/roomIds/${wrong}`, 'there is no such room')
+  return ids
+}
+
 /** The unique keys say which of the two is taken. */
 function takenProblem(error: unknown): unknown {
   if (!isDuplicate(error)) return error
@@ -198,7 +208,7 @@ export async function createUser(tx: Tx, clock: Clock, actorId: number | null, i
   checkNewPassword(input.password, input, '/password')
   const now = clock.now()
   const passwordHash = await hashPassword(input.password)
-  const roomIds = input.roomIds?.map(Number) ?? null
+  const roomIds = await checkedRooms(tx, input.roomIds)
   const id = await insertPerson(tx, { ...input, roomIds, passwordHash, createdAt: now }).catch((error: unknown) => {
     throw takenProblem(error)
   })
@@ -227,7 +237,7 @@ export async function updateUser(
     throw problem('not-allowed', 'You cannot take your own rights away. Ask another administrator.')
   }
   const change: PersonChange = { name: input.name, email: input.email, staffCode: input.staffCode, role: input.role }
-  if (input.roomIds !== undefined) change.roomIds = input.roomIds?.map(Number) ?? null
+  if (input.roomIds !== undefined) change.roomIds = await checkedRooms(tx, input.roomIds)
   if (input.retired !== undefined) change.retiredAt = input.retired ? (before.retiredAt ?? clock.now()) : null
   if (input.password !== undefined) {
     checkNewPassword(input.password, { ...before, ...input, name: input.name ?? before.name }, '/password')

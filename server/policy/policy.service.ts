@@ -38,7 +38,8 @@ export async function recompute(tx: Tx, clock: Clock, binId: number, cause: Caus
   })
   if (!view || view.bin.retired || !isComputed(view)) {
     await repo.retirePolicies(tx, binId)
-    return { changed: false }
+    const main = view?.row.overflowOf ?? null
+    return main === null ? { changed: false } : recompute(tx, clock, main, cause)
   }
   const now = clock.now()
   const calculation = await calculate(tx, now, hospital, view)
@@ -60,8 +61,7 @@ interface Money {
 }
 
 async function calculate(tx: Tx, now: Date, hospital: Money, view: BinView): Promise<Calculation> {
-  const { folded } = await foldedLedger(tx, view.row.id, view.row.assignmentId)
-  const learned = learnDemand(folded.rows, { packSize: view.bin.packSize, plannedRhythmDays: view.row.countEveryDays })
+  const learned = await learnFrom(tx, view)
   const itemId = view.row.itemId!
   const aim = (await aimsOf(tx, [{ binId: view.row.id, itemId, ved: view.row.ved ?? 'D' }])).get(view.row.id)!
   const [supply] = await repo.listSupply(tx, [itemId])
@@ -73,6 +73,16 @@ async function calculate(tx: Tx, now: Date, hospital: Money, view: BinView): Pro
   })
   const input = policyInput({ view, learned, protection, supply: supply ?? null, aim, money: hospital })
   return { learned, aim, input, result: reorderPoint(input), protection }
+}
+
+/** The demand process of a place and its overflow places, from their ledgers. */
+export async function learnFrom(db: Reader, view: BinView): Promise<LearnedDemand> {
+  const { folded } = await foldedLedger(db, view.row.id, view.row.assignmentId)
+  const overflow = []
+  for (const place of view.overflow)
+    overflow.push((await foldedLedger(db, place.binId, place.assignmentId)).folded.rows)
+  const options = { packSize: view.bin.packSize, plannedRhythmDays: view.row.countEveryDays }
+  return learnDemand(folded.rows, options, overflow)
 }
 
 const enteredLevels = (view: BinView): Levels => ({

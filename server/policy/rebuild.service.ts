@@ -1,12 +1,11 @@
-import { learnDemand } from '#shared/demand/learn-demand.ts'
 import type { PolicyInput } from '#shared/policy/policy-input.ts'
 import { reorderPoint } from '#shared/policy/reorder-point.ts'
 import { readHospital } from '../catalogue/hospital.service.ts'
 import type { Clock } from '../clock.ts'
 import { momentOf, viewBins, type BinView } from '../counts/bin-view.service.ts'
-import { foldedLedger, levelDifference } from '../counts/counts.service.ts'
+import { levelDifference } from '../counts/counts.service.ts'
 import type { Db } from '../db/client.ts'
-import { allCurrent, intervalKey, intervalRows, storedIntervals } from './policy.service.ts'
+import { allCurrent, intervalKey, intervalRows, learnFrom, storedIntervals } from './policy.service.ts'
 
 /**
  * Computes every projection anew and reports what differs: levels and intervals from the ledger, policies from their
@@ -53,8 +52,7 @@ async function intervalDifference(db: Db, view: BinView): Promise<string | null>
     view.bin.retired
   )
     return null
-  const { folded } = await foldedLedger(db, view.row.id, view.row.assignmentId)
-  const learned = learnDemand(folded.rows, { packSize: view.bin.packSize, plannedRhythmDays: view.row.countEveryDays })
+  const learned = await learnFrom(db, view)
   const fresh = intervalRows(view.row.id, view.row.assignmentId, learned).map(intervalKey)
   const kept = stored.map(intervalKey)
   const same = fresh.length === kept.length && new Set([...fresh, ...kept]).size === fresh.length

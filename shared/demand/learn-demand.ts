@@ -5,6 +5,7 @@ import { countRhythm } from './count-rhythm.ts'
 import type { DemandEvent, DemandInterval } from './demand-events.ts'
 import { demandIntervals } from './demand-intervals.ts'
 import { forget } from './forget.ts'
+import { mergeOverflow } from './merge-overflow.ts'
 import { policyIntervals, wastageRate } from './policy-intervals.ts'
 
 const dayMs = 86_400_000
@@ -22,17 +23,20 @@ export interface LearnedDemand {
   lastCount: { at: number; opId: string } | null
 }
 
-/** Folded ledger → demand process, all of section 4.0 that needs no other bin. */
+/**
+ * Folded ledgers → demand process, all of section 4.0 that needs no other bin.
+ *
+ * @param rows of the place itself
+ * @param overflow of its overflow places: their use is its use
+ */
 export function learnDemand(
   rows: readonly FoldedRow<LedgerRow>[],
   options: { packSize: number; plannedRhythmDays: number },
+  overflow: readonly (readonly FoldedRow<LedgerRow>[])[] = [],
 ): LearnedDemand {
-  const events: DemandEvent[] = rows
-    .filter((f) => f.voidedBy === null)
-    .map((f) => ({ opId: f.row.opId, type: f.row.type, quantity: f.row.quantity, effectiveAt: f.row.effectiveAt }))
-  const intervals = forget(demandIntervals(events, options))
-  const counts = events.filter((e) => e.type === 'count')
-  const last = counts.at(-1)
+  const own = eventsOf(rows)
+  const intervals = forget(demandIntervals(mergeOverflow([own, ...overflow.map(eventsOf)]), options))
+  const last = own.findLast((e) => e.type === 'count')
   return {
     intervals,
     forPolicy: policyIntervals(intervals),
@@ -41,6 +45,11 @@ export function learnDemand(
     lastCount: last ? { at: last.effectiveAt, opId: last.opId } : null,
   }
 }
+
+const eventsOf = (rows: readonly FoldedRow<LedgerRow>[]): DemandEvent[] =>
+  rows
+    .filter((f) => f.voidedBy === null)
+    .map((f) => ({ opId: f.row.opId, type: f.row.type, quantity: f.row.quantity, effectiveAt: f.row.effectiveAt }))
 
 /** Gaps between counts that are counts of their own: a recount 20 minutes later is no rhythm. */
 const gapsOf = (intervals: readonly DemandInterval[]): number[] =>

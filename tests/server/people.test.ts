@@ -127,6 +127,9 @@ describe('people', () => {
     expect((await admin.post('/users', { ...fields, email: 'b@tallowmere.example' })).body.errors[0].pointer).toBe(
       '/staffCode',
     )
+    expect((await admin.patch(`/users/${made.body.id}`, { roomIds: ['999999'] })).body.errors[0].pointer).toBe(
+      '/roomIds/0',
+    )
     const starter = await app.signedIn('N-7', 'starting out')
     expect((await admin.patch(`/users/${made.body.id}`, { role: 'coordinator' })).body.role).toBe('coordinator')
     expect((await starter.get('/session')).body).toMatchObject({ user: { role: 'coordinator' }, authzVersion: 2 })
