@@ -1,19 +1,19 @@
 import { randomBytes } from 'node:crypto'
 import { DateTime } from 'luxon'
 import { audit } from '../audit/audit.service.ts'
-import { createBin } from '../catalogue/bins.service.ts'
 import { createHospital } from '../catalogue/hospital.service.ts'
 import { createItem, updateItem } from '../catalogue/items.service.ts'
 import { createRoom, createSupplier, createWard } from '../catalogue/places.service.ts'
 import type { Clock } from '../clock.ts'
+import { touchBins } from '../counts/counts.service.ts'
 import type { Tx } from '../db/client.ts'
 import type { Actor } from '../http/context.ts'
 import { createUser } from '../people/people.service.ts'
-import { binPlans, storyPlan } from './bin-plan.ts'
+import { binPlans, storyPlan, type BinPlan } from './bin-plan.ts'
 import { items, lookalikes } from './catalogue/items.ts'
 import { people } from './catalogue/people.ts'
 import { hospital, rooms, suppliers, wards } from './catalogue/places.ts'
-import { insertFloor, insertOverride } from './demo.repository.ts'
+import { insertBins, insertFloor, insertOverride } from './demo.repository.ts'
 import { story, type StoryPlace } from './story.ts'
 
 interface Load {
@@ -84,6 +84,7 @@ async function createItems(
   return ids
 }
 
+/** Like `createBin` for each, in a few statements: three hundred places one by one take most of the load's time. */
 async function createBins(
   { tx, clock, say }: Load,
   by: number,
@@ -91,25 +92,44 @@ async function createBins(
   itemIds: ReadonlyMap<string, string>,
 ): Promise<Map<string, number>> {
   const plans = binPlans()
-  const ids = new Map<string, number>()
-  for (const [i, plan] of plans.entries()) {
-    const isOverflow = plan.overflowOf !== null
-    const made = await createBin(tx, clock, by, {
+  const mains = plans.filter((plan) => plan.overflowOf === null)
+  const now = clock.now()
+  const rowOf = (plan: BinPlan, overflowOf: number | null) => ({
+    bin: {
       code: plan.code,
-      roomId: roomIds.get(plan.room.code)!,
+      kind: 'counted' as const,
+      overflowOf,
+      roomId: Number(roomIds.get(plan.room.code)),
       bay: plan.bay,
       shelf: plan.shelf,
       walkOrder: plan.walkOrder,
-      kind: 'counted',
-      overflowOf: isOverflow ? String(ids.get(plan.overflowOf!)) : null,
-      itemId: itemIds.get(plan.item.code)!,
+      retiredAt: null,
+    },
+    assignment: {
+      itemId: Number(itemIds.get(plan.item.code)),
+      assignedFrom: now,
+      assignedTo: null,
+      enteredPar: overflowOf === null ? plan.parLevel : null,
+      enteredReorderPoint: overflowOf === null ? plan.reorderPoint : null,
       capacity: plan.capacity,
-      enteredReorderPoint: isOverflow ? null : plan.reorderPoint,
-      enteredPar: isOverflow ? null : plan.parLevel,
-    })
-    ids.set(plan.code, Number(made.id))
-    if ((i + 1) % 80 === 0 || i + 1 === plans.length) say(`Demo hospital: ${i + 1} of ${plans.length} places stand.`)
-  }
+    },
+  })
+  const rows = mains.map((plan) => rowOf(plan, null))
+  const ids = await insertBins(tx, rows)
+  const overflow = plans.flatMap((plan) => (plan.overflowOf === null ? [] : [rowOf(plan, ids.get(plan.overflowOf)!)]))
+  for (const [code, id] of await insertBins(tx, overflow)) ids.set(code, id)
+  const entry = { at: now, userId: by, action: 'bin-added', subject: 'bin' }
+  const all = [...rows, ...overflow]
+  await audit(
+    tx,
+    ...all.map(({ bin, assignment }) => ({
+      ...entry,
+      subjectId: ids.get(bin.code)!,
+      after: { ...bin, ...assignment },
+    })),
+  )
+  await touchBins(tx, now, [...ids.values()], null)
+  say(`Demo hospital: ${ids.size} places stand.`)
   return ids
 }
 

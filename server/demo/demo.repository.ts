@@ -1,6 +1,7 @@
 import { and, asc, desc, eq, gt, inArray, lte, max, notLike, sql } from 'drizzle-orm'
 import { auditLog } from '../audit/audit.tables.ts'
-import { operations } from '../counts/counts.tables.ts'
+import { binAssignments, bins } from '../catalogue/catalogue.tables.ts'
+import { binLevels, operations } from '../counts/counts.tables.ts'
 import type { Db, Reader, Tx } from '../db/client.ts'
 import { jobs } from '../jobs/jobs.tables.ts'
 import { users } from '../people/people.tables.ts'
@@ -56,6 +57,44 @@ export async function listKnown(db: Reader, opIds: readonly string[]): Promise<S
     .from(operations)
     .where(inArray(operations.opId, [...opIds]))
   return new Set(rows.map((r) => r.opId))
+}
+
+export type NewBin = typeof bins.$inferInsert
+export type NewAssignment = Omit<typeof binAssignments.$inferInsert, 'binId'>
+
+/**
+ * Places with what they hold and their level rows, as `createBin` leaves each of them. @returns their ids by code
+ */
+export async function insertBins(
+  tx: Tx,
+  rows: { bin: NewBin; assignment: NewAssignment }[],
+): Promise<Map<string, number>> {
+  await tx.insert(bins).values(rows.map((r) => r.bin))
+  const codes = rows.map((r) => r.bin.code)
+  const made = await tx.select({ id: bins.id, code: bins.code }).from(bins).where(inArray(bins.code, codes))
+  const ids = new Map(made.map((r) => [r.code, r.id]))
+  await tx.insert(binAssignments).values(rows.map((r) => ({ ...r.assignment, binId: ids.get(r.bin.code)! })))
+  const held = await tx
+    .select({ id: binAssignments.id, binId: binAssignments.binId })
+    .from(binAssignments)
+    .where(inArray(binAssignments.binId, [...ids.values()]))
+  const assignments = new Map(held.map((a) => [a.binId, a.id]))
+  await tx.insert(binLevels).values(
+    rows.map(({ bin, assignment }) => {
+      const binId = ids.get(bin.code)!
+      const foldedAt = assignment.assignedFrom
+      return {
+        binId,
+        roomId: bin.roomId,
+        assignmentId: assignments.get(binId)!,
+        onHand: 0,
+        held: 0,
+        roomVersion: 0,
+        foldedAt,
+      }
+    }),
+  )
+  return ids
 }
 
 export async function listStaff(db: Reader) {
