@@ -325,9 +325,10 @@ export async function touchBins(tx: Tx, now: Date, binIds: number[], cause: stri
   for (const binId of binIds) await enqueue(tx, now, 'policy-bin', { binId, cause }, `policy-bin-${binId}-${cause}`)
 }
 
-/** The ledger of one assignment of a bin, folded, for those who compute on. */
-export async function foldedLedger(db: Reader, binId: number, assignmentId: number | null) {
-  const rows = await listLedger(db, binId, assignmentId)
+/** The ledger of one assignment of a bin, folded, for those who compute on; `until` leaves out what counts later. */
+export async function foldedLedger(db: Reader, binId: number, assignmentId: number | null, until: Date | null = null) {
+  const all = await listLedger(db, binId, assignmentId)
+  const rows = until === null ? all : all.filter((r) => r.effectiveAt <= until)
   return { rows, folded: fold(rows.map(toLedgerRow)) }
 }
 

@@ -1,12 +1,28 @@
 import type { Clock } from '../clock.ts'
+import { momentOf, viewBins } from '../counts/bin-view.service.ts'
 import type { Db } from '../db/client.ts'
-import { recomputeAll } from '../policy/policy.service.ts'
+import { newestRun, recomputeAll } from '../policy/policy.service.ts'
 import { dropPolicyJobs } from './demo.repository.ts'
+
+const dayMs = 86_400_000
+/** Vital places are also worked out as of these many days ago, so that their points have a past. */
+const lookBackDays = [60, 20, 5]
 
 /** Works out every place's policy from the history, as the night's run does; single looks that waited are not needed. */
 export async function computeDemoPolicies(db: Db, clock: Clock, say: (line: string) => void): Promise<void> {
-  await recomputeAll(db, clock, 'nightly', (done, of) => {
-    if (done % 80 === 0 || done === of) say(`Demo hospital: ${done} of ${of} reorder points worked out.`)
+  const first = (await newestRun(db, 'nightly')) === null
+  const vital = (await viewBins(db, momentOf(clock, 'utc'), { roomIds: null, retired: false })).filter(
+    (v) => v.row.ved === 'V',
+  )
+  const binIds = vital.map((v) => v.row.id)
+  for (const days of first ? lookBackDays : []) {
+    const then = new Date(clock.now().getTime() - days * dayMs)
+    await recomputeAll(db, { now: () => then }, 'nightly', { binIds })
+  }
+  await recomputeAll(db, clock, 'nightly', {
+    onProgress: (done, of) => {
+      if (done % 80 === 0 || done === of) say(`Demo hospital: ${done} of ${of} reorder points worked out.`)
+    },
   })
   await dropPolicyJobs(db, clock.now())
 }

@@ -61,7 +61,7 @@ interface Money {
 }
 
 async function calculate(tx: Tx, now: Date, hospital: Money, view: BinView): Promise<Calculation> {
-  const learned = await learnFrom(tx, view)
+  const learned = await learnFrom(tx, view, now)
   const itemId = view.row.itemId!
   const aim = (await aimsOf(tx, [{ binId: view.row.id, itemId, ved: view.row.ved ?? 'D' }])).get(view.row.id)!
   const [supply] = await repo.listSupply(tx, [itemId])
@@ -75,14 +75,15 @@ async function calculate(tx: Tx, now: Date, hospital: Money, view: BinView): Pro
   return { learned, aim, input, result: reorderPoint(input), protection }
 }
 
-/** The demand process of a place and its overflow places, from their ledgers. */
-export async function learnFrom(db: Reader, view: BinView): Promise<LearnedDemand> {
-  const { folded } = await foldedLedger(db, view.row.id, view.row.assignmentId)
+/** The demand process of a place and its overflow places, from what their ledgers hold up to a moment. */
+export async function learnFrom(db: Reader, view: BinView, until: Date): Promise<LearnedDemand> {
+  const rowsOf = async (binId: number, assignmentId: number | null) =>
+    (await foldedLedger(db, binId, assignmentId, until)).folded.rows
+  const own = await rowsOf(view.row.id, view.row.assignmentId)
   const overflow = []
-  for (const place of view.overflow)
-    overflow.push((await foldedLedger(db, place.binId, place.assignmentId)).folded.rows)
+  for (const place of view.overflow) overflow.push(await rowsOf(place.binId, place.assignmentId))
   const options = { packSize: view.bin.packSize, plannedRhythmDays: view.row.countEveryDays }
-  return learnDemand(folded.rows, options, overflow)
+  return learnDemand(own, options, overflow)
 }
 
 const enteredLevels = (view: BinView): Levels => ({
@@ -201,15 +202,19 @@ export function intervalRows(binId: number, assignmentId: number, learned: Learn
   }))
 }
 
-export const intervalKey = ({ openedAt, closedAt, ...row }: repo.NewInterval): string =>
+/** Doubles come back from the database with another last digit; a millionth of a day is no difference. */
+const micro = (days: number): number => Math.round(days * 1e6)
+
+/** What makes two interval rows equal. */
+export const intervalKey = (row: repo.NewInterval): string =>
   JSON.stringify([
     row.assignmentId,
     row.openingOpId,
     row.closingOpId,
-    openedAt.getTime(),
-    closedAt.getTime(),
-    row.days,
-    row.exposureDays,
+    row.openedAt.getTime(),
+    row.closedAt.getTime(),
+    micro(row.days),
+    micro(row.exposureDays),
     row.quantity,
     row.isCensored,
     row.isUsed,
@@ -226,24 +231,36 @@ async function storeIntervals(tx: Tx, view: BinView, learned: LearnedDemand): Pr
 
 // In bulk ---------------------------------------------------------------------------------------------------------
 
-/** All bins, one transaction each, with progress written down; a run cut short is begun again by its job. */
-export async function recomputeAll(
-  db: Db,
-  clock: Clock,
-  cause: Cause,
-  onProgress?: (done: number, of: number) => void,
-): Promise<number> {
+/** So many bins are worked out side by side: the database answers one while another is computed. */
+const atOnce = 3
+
+interface RunOptions {
+  /** Which bins; all of them when left out. */
+  binIds?: number[]
+  onProgress?: (done: number, of: number) => void
+}
+
+/** Many bins, one transaction each, with progress written down; a run cut short is begun again by its job. */
+export async function recomputeAll(db: Db, clock: Clock, cause: Cause, options: RunOptions = {}): Promise<number> {
   const hospital = await readHospital(db)
   const views = await viewBins(db, momentOf(clock, hospital.timeZone), { roomIds: null, retired: false })
-  const run = await repo.insertRun(db, { startedAt: clock.now(), cause, bins: views.length, done: 0, changed: 0 })
+  const wanted = options.binIds ? new Set(options.binIds) : null
+  const waiting = views.map((v) => v.row.id).filter((id) => wanted === null || wanted.has(id))
+  const of = waiting.length
+  const run = await repo.insertRun(db, { startedAt: clock.now(), cause, bins: of, done: 0, changed: 0 })
+  let done = 0
   let changed = 0
-  for (const [i, view] of views.entries()) {
-    const done = await inTransaction(db, (tx) => recompute(tx, clock, view.row.id, cause))
-    if (done.changed) changed += 1
-    if ((i + 1) % 50 === 0) await repo.updateRun(db, run, { done: i + 1, lastBinId: view.row.id, changed })
-    onProgress?.(i + 1, views.length)
+  const work = async (): Promise<void> => {
+    for (let binId = waiting.shift(); binId !== undefined; binId = waiting.shift()) {
+      const id = binId
+      if ((await inTransaction(db, (tx) => recompute(tx, clock, id, cause))).changed) changed += 1
+      done += 1
+      if (done % 50 === 0) await repo.updateRun(db, run, { done, lastBinId: id, changed })
+      options.onProgress?.(done, of)
+    }
   }
-  await repo.updateRun(db, run, { done: views.length, changed, finishedAt: clock.now() })
+  await Promise.all(Array.from({ length: atOnce }, work))
+  await repo.updateRun(db, run, { done, changed, finishedAt: clock.now() })
   return changed
 }
 

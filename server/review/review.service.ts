@@ -7,7 +7,7 @@ import type { Clock } from '../clock.ts'
 import { momentOf, pageOf, viewBin, viewBins, type BinView } from '../counts/bin-view.service.ts'
 import type { Reader, Tx } from '../db/client.ts'
 import type { Actor } from '../http/context.ts'
-import { intervalCounts, movedSince, recompute, warningsOf } from '../policy/policy.service.ts'
+import { cycleCounts, intervalCounts, movedSince, recompute, warningsOf } from '../policy/policy.service.ts'
 import { peopleNames } from '../people/people.service.ts'
 import { aimsOf, type Aim } from './aims.service.ts'
 import * as repo from './review.repository.ts'
@@ -240,6 +240,7 @@ export async function reviewRows(
     views.map((v) => ({ binId: v.row.id, itemId: v.row.itemId!, ved: v.row.ved ?? 'D' })),
   )
   const counts = new Map((await intervalCounts(db, ids)).map((c) => [c.binId, c]))
+  const cycles = new Map((await cycleCounts(db, ids)).map((c) => [c.binId, c]))
   const proposals = await proposalsOf(db, actor, ids)
   const warnings = await warningsOf(db)
   const today = DateTime.fromJSDate(clock.now(), { zone: timeZone }).startOf('day')
@@ -255,7 +256,7 @@ export async function reviewRows(
       review: reviewState(aim, today),
       intervals: seen?.intervals ?? 0,
       days: seen?.days ?? 0,
-      runOuts: { found: seen?.foundEmpty ?? 0, cycles: seen?.intervals ?? 0 },
+      runOuts: { found: cycles.get(v.row.id)?.found ?? 0, cycles: cycles.get(v.row.id)?.cycles ?? 0 },
       proposal: proposal
         ? { id: proposal.id, level: proposal.level, byName: proposal.byName, own: proposal.own }
         : null,

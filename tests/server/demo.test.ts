@@ -8,6 +8,7 @@ import { foldedLedger, levelDifference, syncOperations, toLedgerRow } from '#ser
 import { movements, operations } from '#server/counts/counts.tables.ts'
 import { auditLog } from '#server/audit/audit.tables.ts'
 import { jobs } from '#server/jobs/jobs.tables.ts'
+import { rebuildAll } from '#server/policy/rebuild.service.ts'
 import { policies } from '#server/policy/policy.tables.ts'
 import { ensureFirstData } from '#server/demo/first-data.ts'
 import { liveOn } from '#server/demo/live-on.ts'
@@ -108,6 +109,11 @@ describe('the demo hospital', () => {
     expect(newest((await database.db.select({ at: auditLog.at }).from(auditLog)).map((r) => r.at))).toBeLessThanOrEqual(
       now.getTime(),
     )
+  })
+
+  it('equals its projections, and every policy its own input', async () => {
+    const report: string[] = []
+    expect(await rebuildAll(database.db, clock, (line) => report.push(line)), report.join('\n')).toBe(0)
   })
 
   it('has levels that equal a fresh fold of the ledger', async () => {
