@@ -8,14 +8,13 @@ import type { AnyRecord, KindOfRecord } from './record-kinds.ts'
 export async function findRecord(kind: KindOfRecord, id: string): Promise<AnyRecord> {
   if (kind.kind === 'items') return (await call(readItem, { params: { id } })) as AnyRecord
   if (kind.kind === 'bins') return (await call(readBin, { params: { id } })) as AnyRecord
-  const all = await everyPage(
-    async (page) =>
-      (await call(kind.list, { query: { page, pageSize: 500, retired: 'yes' } })) as {
-        items: AnyRecord[]
-        total: number
-      },
-  )
-  const found = all.find((record) => record.id === id)
-  if (!found) throw problem('not-found')
-  return found
+  for (const retired of ['no', 'yes']) {
+    const all = await everyPage(
+      async (page) =>
+        (await call(kind.list, { query: { page, pageSize: 500, retired } })) as { items: AnyRecord[]; total: number },
+    )
+    const found = all.find((record) => record.id === id)
+    if (found) return found
+  }
+  throw problem('not-found')
 }
