@@ -164,7 +164,6 @@ test.describe.serial('from the shelf to the order', () => {
     const vital = (await reviewer.bins(`state=ok`)).filter((b) => b.item!.ved === 'V' && b.kind === 'counted')
     let target: Bin | undefined
     let policy: BinPolicy | undefined
-    let expected = 0
     for (const bin of vital) {
       policy = (await (await reviewer.api.get(`/api/v1/bins/${bin.id}/policy`)).json()) as BinPolicy
       if (
@@ -173,8 +172,8 @@ test.describe.serial('from the shelf to the order', () => {
         policy.serviceLevel.source !== 'class'
       )
         continue
-      expected = reorderPoint({ ...(policy.input as PolicyInput), serviceLevel: 0.999 }).reorderPoint!
-      if (expected > policy.reorderPoint!) {
+      const raised = reorderPoint({ ...(policy.input as PolicyInput), serviceLevel: 0.999 }).reorderPoint!
+      if (raised > policy.reorderPoint!) {
         target = bin
         break
       }
