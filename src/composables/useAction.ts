@@ -7,6 +7,8 @@ export interface Action<A extends unknown[], R> {
   error: Ref<unknown>
   /** Sentences of a refused request by field name, the first segment of each pointer. */
   fields: ComputedRef<Record<string, string>>
+  /** What went wrong apart from single fields, which say it themselves. */
+  general: ComputedRef<unknown>
 }
 
 /**
@@ -25,6 +27,7 @@ export function useAction<A extends unknown[], R>(work: (...args: A) => Promise<
     }
     return found
   })
+  const general = computed(() => (Object.keys(fields.value).length ? null : error.value))
   async function run(...args: A): Promise<R | undefined> {
     if (busy.value) return undefined
     busy.value = true
@@ -38,5 +41,5 @@ export function useAction<A extends unknown[], R>(work: (...args: A) => Promise<
       busy.value = false
     }
   }
-  return { run, busy, error, fields }
+  return { run, busy, error, fields, general }
 }

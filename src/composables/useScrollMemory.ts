@@ -2,8 +2,8 @@ import { nextTick, onScopeDispose, type Ref } from 'vue'
 import { useRouter } from 'vue-router'
 
 /**
- * The scrolling page starts at its top on a new address and returns to where it was on the way back. The browser does
- * this only for whole documents.
+ * The scrolling page starts at its top on a new address and returns to where it was on the way back, and the focus goes
+ * with it. The browser does this only for whole documents.
  */
 export function useScrollMemory(page: Readonly<Ref<HTMLElement | null>>): void {
   const router = useRouter()
@@ -21,7 +21,10 @@ export function useScrollMemory(page: Readonly<Ref<HTMLElement | null>>): void {
     goingBack = false
     if (to.path === from.path) return
     await nextTick()
-    if (page.value) page.value.scrollTop = top
+    if (!page.value) return
+    page.value.scrollTop = top
+    // What was pressed may be gone; reading and tabbing go on from the new page, not from the top of the window.
+    if (!page.value.contains(document.activeElement)) page.value.focus({ preventScroll: true })
   })
   onScopeDispose(() => {
     window.removeEventListener('popstate', back)

@@ -1,6 +1,6 @@
 import { createRouter, createWebHistory, type Router } from 'vue-router'
 import type { useSessionStore } from '#src/stores/session.ts'
-import { commonWords } from '#src/i18n/en.ts'
+import { commonWords, shellWords } from '#src/i18n/en.ts'
 import { guard } from './guards.ts'
 import { routes } from './routes.ts'
 
@@ -13,8 +13,9 @@ export function makeRouter(session: ReturnType<typeof useSessionStore>): Router 
     await session.restore()
     return guard(to, session)
   })
-  router.afterEach(() => {
-    document.title = commonWords.product
+  router.afterEach((to) => {
+    const word = shellWords.titleOf(to.meta.place, String(to.name ?? ''))
+    document.title = word ? `${word} · ${commonWords.product}` : commonWords.product
   })
   return router
 }

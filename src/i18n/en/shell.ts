@@ -9,6 +9,11 @@ export const shellWords = {
     me: 'Me',
     more: 'More',
   },
+  /** What a page is called in the tab. */
+  titleOf: (place: string | undefined, route: string): string | null => {
+    if (place) return (shellWords.places as Record<string, string>)[place] ?? null
+    return route === 'sign-in' ? 'Sign in' : route === 'password-reset' ? 'New password' : null
+  },
   navigation: 'Places',
   night: 'Night',
   day: 'Day',
