@@ -122,6 +122,7 @@ export const roomWords = {
     n > 0 ? `Count ${quantity(n)} due ${binWord(word, n)}` : 'Count this room',
   countThis: 'Count',
   find: 'Find an item or a code',
+  fromPhone: (when: string): string => `As this phone read it ${when}. The shelf and the record may differ.`,
   noRooms: 'No rooms yet',
   noRoomsWhat: 'A room has to be added under Hospital, or your coordinator adds you to one.',
   noBins: (word: Hospital['binWord'] | undefined): string => `No ${binWord(word, 2)} in this room`,
