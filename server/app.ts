@@ -1,3 +1,4 @@
+import compression from 'compression'
 import express, { Router, type Express } from 'express'
 import helmet from 'helmet'
 import pino from 'pino'
@@ -43,7 +44,7 @@ export function createApp(deps: AppDeps): { app: Express; routes: RegisteredRout
 
   const api = Router()
   const routes = new Routes(api, deps)
-  app.use('/api/v1', markReply, sameOriginWrites, ...sessions(deps), api)
+  app.use('/api/v1', compression(), markReply, sameOriginWrites, ...sessions(deps), api)
   peopleRoutes(routes, deps)
   catalogueRoutes(routes)
   countsRoutes(routes)

@@ -11,8 +11,10 @@ const unlock = lockFolder(folder)
 await ensureModules()
 await ensureMariadb()
 const database = process.env.DATABASE_URL ? null : await startMariadb(folder)
+const port = process.env.PORT || '4310'
 const env = {
   ...process.env,
+  BRIMLINE_API: `http://127.0.0.1:${port}`,
   DATA_DIR: folder,
   ...(database ? { DATABASE_URL: database.appUrl, DATABASE_ADMIN_URL: database.ownerUrl } : {}),
 }
@@ -24,7 +26,7 @@ const children = [
   }),
   spawn(process.execPath, [inRoot('node_modules/vite/bin/vite.js')], { cwd: root, env, stdio: 'inherit' }),
 ]
-say('Development pages on http://127.0.0.1:5173, the server behind them on http://127.0.0.1:4310.')
+say(`Development pages on http://127.0.0.1:5173, the server behind them on http://127.0.0.1:${port}.`)
 
 let stopping = false
 async function stopAll() {
