@@ -26,6 +26,7 @@ function toLine({ line, ...more }: repo.LineRow): Order['lines'][number] {
     binId: String(line.binId),
     itemId: String(line.itemId),
     itemName: more.itemName,
+    roomId: String(more.roomId),
     roomName: more.roomName,
     binDisplay: formatShelfCode(more.binCode),
     packs: line.packs,

@@ -95,6 +95,7 @@ export async function listLines(db: Reader, orderIds: number[]) {
       itemName: items.name,
       orderName: items.orderName,
       itemCode: items.code,
+      roomId: rooms.id,
       roomName: rooms.name,
       roomCode: rooms.code,
       binCode: bins.code,

@@ -260,6 +260,7 @@ const itemFields = {
   coldChain: z.boolean(),
   supplierId: Id.nullable(),
   supplierItem: z.string().trim().max(60),
+  /** Of one unit of use, in the hospital's currency. */
   price: z.number().min(0).max(1_000_000).nullable(),
   orderUnit: text(30),
   unitsPerOrder: z.number().int('whole numbers only').min(1, 'at least 1').max(99_999),

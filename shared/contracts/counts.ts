@@ -141,6 +141,7 @@ export const SnapshotOpenLine = z.object({
   orderLineId: Id,
   orderNumber: z.string(),
   binId: Id,
+  /** Still to come: ordered less put away less cancelled. */
   units: z.number().int(),
   putAway: z.number().int(),
   expectedOn: z.string().nullable(),

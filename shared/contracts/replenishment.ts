@@ -20,6 +20,7 @@ export const WorklistRow = Bin.extend({
   why: z.array(z.string()),
   /** Draft orders that hold this bin already. */
   inDraft: z.object({ orderId: Id, number: z.string() }).nullable(),
+  /** Of one unit of use. */
   price: z.number().nullable(),
 })
 export type WorklistRow = z.infer<typeof WorklistRow>
@@ -48,6 +49,7 @@ export const OrderLine = z.object({
   binId: Id,
   itemId: Id,
   itemName: z.string(),
+  roomId: Id,
   roomName: z.string(),
   binDisplay: z.string(),
   packs: z.number().int(),
@@ -57,6 +59,7 @@ export const OrderLine = z.object({
   arrivedUnits: z.number().int(),
   receivedUnits: z.number().int(),
   cancelledUnits: z.number().int(),
+  /** Of one unit of use; times `units` it is what the item costs in this order. */
   price: z.number().nullable(),
 })
 export const Order = z.object({
