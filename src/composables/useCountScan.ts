@@ -1,7 +1,7 @@
 import { ref, shallowRef } from 'vue'
 import { readScan } from '#shared/barcode/read-scan.ts'
 import type { Gs1Scan, ScanResult } from '#shared/barcode/scan-result.ts'
-import { countWords, scanWords } from '#src/i18n/en/counts.ts'
+import { countWords, scanWords } from '#src/i18n/en.ts'
 import { useCountingStore } from '#src/stores/counting.ts'
 import { useRoomsCacheStore } from '#src/stores/rooms-cache.ts'
 import { useTick } from './useTick.ts'

@@ -1,5 +1,5 @@
 import { computed, onScopeDispose, ref, type ComputedRef } from 'vue'
-import type { Moment } from '#src/i18n/en/catalogue.ts'
+import type { Moment } from '#src/i18n/en.ts'
 import { useCatalogueStore } from '#src/stores/catalogue.ts'
 
 const TICK_MS = 30_000

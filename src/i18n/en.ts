@@ -2,6 +2,7 @@
 export * from './en/catalogue.ts'
 export * from './en/common.ts'
 export * from './en/counts-ledger.ts'
+export * from './en/counts.ts'
 export * from './en/format.ts'
 export * from './en/gauge.ts'
 export * from './en/hospital.ts'

@@ -11,7 +11,7 @@ import {
 } from '#shared/contracts/policy.ts'
 import { call } from '#src/services/api.ts'
 import { everyPage } from '#src/services/every-page.ts'
-import type { ReviewShow } from '#src/i18n/en/review.ts'
+import type { ReviewShow } from '#src/i18n/en.ts'
 import { useSessionStore } from './session.ts'
 
 export interface AimChange {

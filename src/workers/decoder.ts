@@ -1,10 +1,11 @@
+import { BrowserMultiFormatReader } from '@zxing/browser'
 import {
   BarcodeFormat,
   BinaryBitmap,
   DecodeHintType,
   HybridBinarizer,
-  MultiFormatReader,
   RGBLuminanceSource,
+  type Result,
 } from '@zxing/library'
 import { repairCode128 } from './code128-repair.ts'
 
@@ -43,16 +44,28 @@ const formats = [
   BarcodeFormat.CODE_39,
 ]
 
-function makeReader(hard: boolean): MultiFormatReader {
-  const reader = new MultiFormatReader()
+/**
+ * The engine without its scan loop: that one would own the camera, look at whole frames on the page's own thread, and
+ * never empty its readers between frames.
+ */
+class FrameReader extends BrowserMultiFormatReader {
+  override decodeBitmap(bitmap: BinaryBitmap): Result {
+    try {
+      return this.reader.decodeWithState(bitmap)
+    } finally {
+      this.reader.reset()
+    }
+  }
+}
+
+function makeReader(hard: boolean): FrameReader {
   const hints = new Map<DecodeHintType, unknown>([
     [DecodeHintType.POSSIBLE_FORMATS, formats],
     // Without it the separators of a GS1-128 are dropped.
     [DecodeHintType.ASSUME_GS1, true],
   ])
   if (hard) hints.set(DecodeHintType.TRY_HARDER, true)
-  reader.setHints(hints)
-  return reader
+  return new FrameReader(hints)
 }
 
 /** Grey values of RGBA pixels, green counting most. */
@@ -77,13 +90,11 @@ export function makeDecoder(): (
     const reader = hard ? readers.hard : readers.plain
     try {
       const bitmap = new BinaryBitmap(new HybridBinarizer(new RGBLuminanceSource(grey, width, height)))
-      const result = reader.decodeWithState(bitmap)
+      const result = reader.decodeBitmap(bitmap)
       const format = BarcodeFormat[result.getBarcodeFormat()].toLowerCase().replaceAll('_', '')
       return { text: result.getText(), format }
     } catch {
       return null
-    } finally {
-      reader.reset()
     }
   }
 }

@@ -1,5 +1,5 @@
 import type { SyncState } from '#src/services/sync.ts'
-import { attentionWords } from '#src/i18n/en/counts.ts'
+import { attentionWords } from '#src/i18n/en.ts'
 
 /** What sending is doing, in a sentence; empty when there is nothing to say. */
 export function syncWords(state: SyncState, unsent: number): string {

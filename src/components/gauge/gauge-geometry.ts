@@ -1,7 +1,7 @@
 /**
  * Geometry of the shared line gauge, in pixels from the gauge's own top left. The line always stands in the middle of
  * the width, so that every gauge of a list has it at the same place; a bar is scaled by position ÷ reorder point.
- * Pure: no document, no theme. Words live in `#src/i18n/en/gauge.ts`.
+ * Pure: no document, no theme. Words live in `#src/i18n/en.ts`.
  */
 export interface GaugeFigures {
   /** Usable units on the shelf; null: never counted. */
