@@ -1,4 +1,7 @@
-/** A short tone and a short buzz when something was saved, two low ones for a misread. Both can be switched off. */
+/**
+ * A short tone and a short buzz when something was saved, two low ones for a misread. Both can be switched off; until
+ * somebody chooses, there is no tone in night colours, because people sleep there.
+ */
 const KEY = 'brimline.tick'
 
 let audio: AudioContext | null = null
@@ -8,18 +11,22 @@ export interface TickSettings {
   buzz: boolean
 }
 
+const byDay = (): boolean => document.documentElement.dataset.theme !== 'dark'
+
 export function readTick(): TickSettings {
   try {
     const stored = JSON.parse(localStorage.getItem(KEY) ?? '{}') as Partial<TickSettings>
-    return { sound: stored.sound !== false, buzz: stored.buzz !== false }
+    return { sound: stored.sound ?? byDay(), buzz: stored.buzz !== false }
   } catch {
-    return { sound: true, buzz: true }
+    return { sound: byDay(), buzz: true }
   }
 }
 
-export function writeTick(settings: TickSettings): void {
+/** Keeps what was chosen on this device; what was not chosen stays as it was. */
+export function writeTick(choice: Partial<TickSettings>): void {
   try {
-    localStorage.setItem(KEY, JSON.stringify(settings))
+    const stored = JSON.parse(localStorage.getItem(KEY) ?? '{}') as Partial<TickSettings>
+    localStorage.setItem(KEY, JSON.stringify({ ...stored, ...choice }))
   } catch {
     // The choice then holds until the page is closed.
   }

@@ -55,6 +55,12 @@ export const useOutboxStore = defineStore('outbox', () => {
     others.value = theirs
   }
 
+  /** Units put away against an order line on this phone that are not in the record yet. */
+  const putAwayWaiting = (orderLineId: string): number =>
+    waiting.value
+      .filter((e) => e.op.type === 'receipt' && e.op.orderLineId === orderLineId)
+      .reduce((sum, e) => sum + (typeof e.op.quantity === 'number' ? e.op.quantity : 0), 0)
+
   const owner = (): { userId: string; initials: string } => {
     const { user } = session
     if (!user) throw new Error('nobody is signed in on this phone')
@@ -129,6 +135,7 @@ export const useOutboxStore = defineStore('outbox', () => {
     attention,
     unsent,
     oldestWaitingAt,
+    putAwayWaiting,
     load,
     save,
     fix,

@@ -119,7 +119,10 @@ export const fieldWords = {
   supplierItem: { label: 'Supplier’s number' },
   orderUnit: { label: 'Ordered in', hint: 'Such as box or case.' },
   unitsPerOrder: { label: 'Units in one' },
-  price: { label: 'Price of one' },
+  price: {
+    label: 'Price of one unit of use',
+    hint: 'In the hospital’s currency, of a single unit as counted, not of a pack. Empty where nobody knows.',
+  },
   gtins: { label: 'Barcodes on the packs', hint: 'GTIN with 8, 12, 13 or 14 digits.' },
   shelfLifeDays: { label: 'Shelf life', suffix: 'days' },
   minShelfDays: { label: 'Days left at delivery, at least', suffix: 'days' },

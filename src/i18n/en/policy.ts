@@ -62,6 +62,7 @@ const causeWords: Record<string, string> = {
   entered: 'entered by a person',
   accepted: 'a person agreed to the worked-out figure',
   nightly: 'worked out again at night',
+  use: 'use since then has changed',
 }
 
 const waitWords: Record<string, string> = {
@@ -177,13 +178,13 @@ export const policyWords = {
   since: (when: string): string => `In force since ${when}`,
   pending: (point: number): string => `Works out at ${quantity(point)} now`,
   waits: (code: string): string => waitWords[code] ?? `It waits: ${code}.`,
-  because: (code: string): string => causeWords[code] ?? code,
+  because: (code: string): string => causeWords[code] ?? 'worked out anew',
   accept: 'Agree to it',
   accepted: 'Agreed. The worked-out figure is in force.',
   moves: (from: number | null | undefined, to: number | null): string =>
     from == null ? (to === null ? '—' : quantity(to)) : `${quantity(from)} → ${to === null ? '—' : quantity(to)}`,
   older: 'Older changes',
-  cause: (what: string, units: number): string => `${causeWords[what] ?? what}: ${signed(units)}`,
+  cause: (what: string, units: number): string => `${causeWords[what] ?? 'worked out anew'}: ${signed(units)}`,
   aim: (level: number): string => `Aim: ${odds(level)} (${percent(level)})`,
   reviewBy: (when: string): string => `review by ${when}`,
   reason: 'Reason',

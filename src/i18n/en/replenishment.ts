@@ -82,6 +82,7 @@ export const replenishmentWords = {
   /** "works out at 2 boxes (100)". */
   worksOut: (n: number, unit: string, size: number): string =>
     `works out at ${counted(n, unit)}${size > 1 ? ` (${quantity(n * size)})` : ''}`,
+  cost: (n: number, unit: string, price: string): string => `${counted(n, unit)} cost${n === 1 ? 's' : ''} ${price}`,
   noSupplier: 'No supplier is set for this item. Set one under Hospital, then it can be ordered.',
   none: 'Nothing to order',
   noneWhat: 'Every counted place is above its reorder point, with what is on order.',
@@ -113,8 +114,9 @@ export const replenishmentWords = {
   },
   lineState: (order: Pick<Order, 'state'>, line: Line): string =>
     order.state === 'draft'
-      ? `${packs(line.packs, line.orderUnit, line.packSize)} in a draft`
+      ? packs(line.packs, line.orderUnit, line.packSize)
       : `${quantity(openUnits(line))} to come, ${stateWords[order.state]}`,
+  toCome: (units: number): string => `${quantity(units)} to come`,
   due: (when: string): string => `due ${when}`,
   risk: (risk: number): string =>
     risk >= 0.95
@@ -147,6 +149,11 @@ export const orderWords = {
     price: 'Price',
   },
   heading: (order: Order): string => (order.supplierKind === 'stores' ? 'Requisition' : 'Order'),
+  /** "Requisition draft 448" says its state already. */
+  lead: (order: Order, at: Moment): string =>
+    [order.supplierName, order.state === 'draft' ? null : stateWords[order.state], orderWords.sentAt(order, at)]
+      .filter(Boolean)
+      .join(' · '),
   sentAt: (order: Order, at: Moment): string =>
     order.sentAt ? `sent ${near(order.sentAt, at.now, at.zone)}` : `started ${near(order.createdAt, at.now, at.zone)}`,
   expected: (when: string): string => `expected ${when}`,
@@ -175,8 +182,11 @@ export const orderWords = {
   putAwayTitle: (item: string): string => `Put away: ${item}`,
   putAwayWhat: (room: string, place: string): string => `Only what is on the shelf now, in ${room}, ${place}.`,
   putAwayUnits: 'Units put away',
+  putAwayDo: (units: number, unit: string): string => `Put away ${quantity(units)} ${unit}`.trim(),
+  onThisPhone: (units: number): string => `${quantity(units)} on this phone`,
   putAwaySaved: (units: number, item: string): string => `${quantity(units)} of ${item} put away. Saved on this phone.`,
   toSend: 'It is sent to the record by itself.',
   total: 'Total',
+  withoutPrice: (n: number): string => `without ${counted(n, 'item')} that ${n === 1 ? 'has' : 'have'} no price`,
   fixed: 'Only a draft can be changed.',
 } as const
