@@ -90,7 +90,7 @@ async function problemOf(response: Response): Promise<Problem> {
   return new Problem({
     code: 'internal',
     status: response.status,
-    title: 'Something broke on our side',
+    title: '',
     detail: '',
     retryAfter,
   })

@@ -10,7 +10,7 @@ export const peopleWords = {
     forgot: 'Forgotten password',
     offline: 'Signing in for the first time needs a connection.',
     waiting: (count: number, name: string): string =>
-      `${counted(count, 'count')} by ${name} on this phone ${count === 1 ? 'is' : 'are'} waiting. Only ${name} can send ${count === 1 ? 'it' : 'them'}.`,
+      `${counted(count, 'unsent entry', 'unsent entries')} by ${name} ${count === 1 ? 'is' : 'are'} on this phone. Only ${name} can send ${count === 1 ? 'it' : 'them'}.`,
     again: (name: string): string => `Signed in before as ${name}.`,
   },
   reset: {

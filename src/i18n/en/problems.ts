@@ -25,6 +25,12 @@ const offlineWords = {
   },
 } as const
 
+/** For an answer of ours that carries no sentence. */
+const unread = {
+  title: 'Something broke on our side',
+  detail: 'What is on this phone is safe. Try again in a moment; if it stays, tell your administrator.',
+} as const
+
 export const problemWords = {
   retry: 'Try again',
   signInAgain: 'Sign in again',
@@ -35,8 +41,8 @@ export const problemWords = {
     if (error instanceof Problem) {
       const wait = error.retryAfter ? ` Wait ${error.retryAfter} seconds.` : ''
       return {
-        title: error.title,
-        detail: error.detail + wait,
+        title: error.title || unread.title,
+        detail: (error.detail || (error.title ? '' : unread.detail)) + wait,
         offline: false,
         signIn: error.code === 'not-signed-in',
       }
