@@ -134,7 +134,7 @@ export const fieldWords = {
   binCode: { label: 'Label code', hint: 'Empty: the place gets a new code.' },
   bay: { label: 'Bay' },
   shelf: { label: 'Shelf' },
-  walkOrder: { label: 'Walking order' },
+  walkOrder: { label: 'Walking order', hint: 'A whole number; empty puts it at the end of the room.' },
   binKind: { label: 'Kind' },
   binKinds: { counted: 'counted', 'two-bin': 'two bins', 'fixed-set': 'fixed set' },
   overflowOf: { label: 'Overflow of', hint: 'Counted on its own, decided with its main place.' },

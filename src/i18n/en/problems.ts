@@ -31,6 +31,12 @@ const unread = {
   detail: 'What is on this phone is safe. Try again in a moment; if it stays, tell your administrator.',
 } as const
 
+/** An address that cannot name anything. */
+const noSuch = {
+  title: 'There is nothing at this address',
+  detail: 'It may be mistyped or cut short. Choose it from a list.',
+} as const
+
 export const problemWords = {
   retry: 'Try again',
   signInAgain: 'Sign in again',
@@ -38,6 +44,9 @@ export const problemWords = {
   /** What happened and what to do, for anything that was thrown. */
   say(error: unknown): Said {
     if (error instanceof Offline) return { ...offlineWords[error.reason], offline: true, signIn: false }
+    if (error instanceof Problem && error.errors?.length && error.errors.every((e) => e.pointer === '/id')) {
+      return { title: noSuch.title, detail: noSuch.detail, offline: false, signIn: false }
+    }
     if (error instanceof Problem) {
       const wait = error.retryAfter ? ` Wait ${error.retryAfter} seconds.` : ''
       return {

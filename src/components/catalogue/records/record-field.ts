@@ -25,6 +25,10 @@ export interface RecordField {
   source?: PickSource
   /** Empty means null instead of a missing value. */
   nullable?: boolean
+  /** May be left empty: the server then chooses. */
+  optional?: boolean
+  /** What a new record starts with. */
+  start?: string
   /** Shown only for a new record, or only for an existing one. */
   only?: 'new' | 'existing'
   /** Half the width on desktop. */
@@ -46,8 +50,10 @@ export function toForm(field: RecordField, value: unknown): FieldValue {
   if (field.type === 'gtins') return Array.isArray(value) ? (value as Gtin[]).map((g) => ({ ...g })) : []
   if (field.type === 'picks') return Array.isArray(value) ? [...(value as string[])] : []
   if (field.type === 'rooms') return value === null ? null : Array.isArray(value) ? [...(value as string[])] : []
-  if (field.type === 'choice') return typeof value === 'string' ? value : (field.options?.[0]?.value ?? '')
-  return value === null || value === undefined ? '' : String(value)
+  if (field.type === 'choice')
+    return typeof value === 'string' ? value : (field.start ?? field.options?.[0]?.value ?? '')
+  if (value === undefined) return field.start ?? ''
+  return value === null ? '' : String(value)
 }
 
 export interface Converted {
@@ -58,10 +64,15 @@ export interface Converted {
 const isNumber = (type: RecordField['type']): boolean => type === 'whole' || type === 'decimal'
 
 /**
- * The request body of a form. Numbers are read from text here, because only the form knows what was typed; everything
- * else is judged by the server. An empty password, code or optional number of a new record is left out.
+ * The request body of a form. Numbers are read from text here, because only the form knows what was typed, and what has
+ * to be filled in is said here; everything else is judged by the server. An empty password, code or optional number of a
+ * new record is left out.
  */
-export function toBody(fields: readonly RecordField[], values: FormValues, words: { number: string }): Converted {
+export function toBody(
+  fields: readonly RecordField[],
+  values: FormValues,
+  words: { number: string; needed: string },
+): Converted {
   const body: Record<string, unknown> = {}
   const errors: Record<string, string> = {}
   for (const field of fields) {
@@ -72,10 +83,13 @@ export function toBody(fields: readonly RecordField[], values: FormValues, words
         .replace(',', '.')
       if (typed === '') {
         if (field.nullable) body[field.name] = null
+        else if (!field.optional) errors[field.name] = words.needed
       } else if (!/^-?[0-9]+(\.[0-9]+)?$/.test(typed)) errors[field.name] = words.number
       else body[field.name] = Number(typed)
     } else if (field.type === 'pick') {
-      body[field.name] = value === '' ? (field.nullable ? null : undefined) : value
+      if (value !== '') body[field.name] = value
+      else if (field.nullable) body[field.name] = null
+      else errors[field.name] = words.needed
     } else if ((field.type === 'password' || field.name === 'code') && value === '') {
       body[field.name] = field.type === 'password' || field.only === 'new' ? undefined : ''
     } else body[field.name] = value

@@ -3,7 +3,7 @@ import { changedOnly, toBody, toForm, type RecordField } from '#src/components/c
 import { settingsBody, settingsValues } from '#src/components/catalogue/records/settings-form.ts'
 
 const field = (more: Partial<RecordField>): RecordField => ({ name: 'x', label: 'X', type: 'text', ...more })
-const words = { number: 'a number, such as 12' }
+const words = { number: 'a number, such as 12', needed: 'cannot be empty' }
 
 describe('record forms', () => {
   it('keeps what was typed and says what a number looks like', () => {
@@ -12,9 +12,21 @@ describe('record forms', () => {
     expect(body).toEqual({})
   })
 
-  it('sends null for an emptied optional number and leaves a missing one out', () => {
+  it('says what has to be filled in, and starts a new record with the usual', () => {
+    expect(toBody([field({ type: 'decimal' })], { x: '' }, words).errors).toEqual({ x: 'cannot be empty' })
+    expect(toBody([field({ type: 'pick' })], { x: '' }, words).errors).toEqual({ x: 'cannot be empty' })
+    expect(toBody([field({ type: 'pick', nullable: true })], { x: '' }, words)).toEqual({
+      body: { x: null },
+      errors: {},
+    })
+    expect(toForm(field({ type: 'whole', start: '7' }), undefined)).toBe('7')
+    expect(toForm(field({ type: 'whole', start: '7' }), 3)).toBe('3')
+    expect(toForm(field({ type: 'whole', start: '7' }), null)).toBe('')
+  })
+
+  it('sends null for an emptied number that may be unknown and leaves a missing one out', () => {
     expect(toBody([field({ type: 'decimal', nullable: true })], { x: '' }, words).body).toEqual({ x: null })
-    expect(toBody([field({ type: 'decimal' })], { x: '' }, words).body).toEqual({})
+    expect(toBody([field({ type: 'decimal', optional: true })], { x: '' }, words)).toEqual({ body: {}, errors: {} })
     expect(toBody([field({ type: 'decimal' })], { x: '0,5' }, words).body).toEqual({ x: 0.5 })
   })
 
