@@ -123,8 +123,6 @@ export const roomWords = {
   countThis: 'Count',
   find: 'Find an item or a code',
   fromPhone: (when: string): string => `As this phone read it ${when}. The shelf and the record may differ.`,
-  noRooms: 'No rooms yet',
-  noRoomsWhat: 'A room has to be added under Hospital, or your coordinator adds you to one.',
   noBins: (word: Hospital['binWord'] | undefined): string => `No ${binWord(word, 2)} in this room`,
   noBinsWhat: 'They are added under Hospital.',
   nothingFound: (q: string): string => `Nothing called “${q}” here`,

@@ -159,6 +159,11 @@ export const roundWords = {
   keptAt: (when: string): string => `as of ${when}`,
   noRooms: 'No room is on this phone yet',
   noRoomsWhat: 'Open this page once with a connection. From then on counting works without one.',
+  noneYours: 'No room is yours yet',
+  noneYoursWhat: (editor: boolean): string =>
+    editor
+      ? 'Add a ward, then a room in it, under Hospital. A person sees a room once it is among their rooms.'
+      : 'Ask your coordinator or administrator: they add a room to you under Hospital, People.',
   noRoom: 'This room is not on this phone yet',
   noRoomWhat: 'It is fetched as soon as there is a connection. From then on counting works without one.',
   empty: 'Nothing to count here',

@@ -31,7 +31,18 @@ export const hospitalWords = {
   retired: 'retired',
   none: 'None yet',
   noneFound: 'Nothing found',
-  noneWhat: 'Add the first one.',
+  /** What the first of a kind needs, where a list is empty. */
+  noneWhat: (kind: RecordKind, noun: Noun): string =>
+    ({
+      wards: 'A ward is who uses the rooms. Start here.',
+      rooms: 'A room holds the shelves of a ward. Its ward has to be there first.',
+      suppliers: 'Central stores are a supplier too. Their order days and cut-off tell when to order.',
+      items: 'An item has a unit to count, a pack to order and a supplier. Add the supplier first.',
+      bins: `A ${binWord(noun)} stands in a room and holds an item. Both have to be there first.`,
+      people: 'Ward staff count, coordinators order, reviewers set how sure an item must be.',
+    })[kind],
+  noneRetired: 'None retired',
+  noneRetiredWhat: 'What is retired stands here and can be brought back.',
   noneFoundWhat: 'Try fewer letters, or look among the retired ones.',
   total: (n: number): string => (n === 1 ? '1 in all' : `${quantity(n)} in all`),
   create: 'Add',
@@ -85,6 +96,13 @@ export const hospitalWords = {
     staffCode: 'Staff code',
     rooms: 'Rooms',
   },
+} as const
+
+/** An empty hospital: what to do, in order. */
+export const firstStepWords = {
+  title: 'Set up the hospital',
+  lead: 'Nothing can be counted yet. One thing builds on the other, from the top.',
+  there: (n: number): string => `${quantity(n)} there`,
 } as const
 
 /** Labels and hints of every form field, by kind and field name. */

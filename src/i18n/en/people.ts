@@ -18,6 +18,7 @@ export const peopleWords = {
     askLead: 'Give your e-mail address. If it is known here, a link is sent to it.',
     email: 'E-mail',
     ask: 'Send the link',
+    askAgain: 'Ask for a new link',
     asked: 'If the address is known, a link is on its way. It works once, for a short time.',
     setLead: 'Choose a new password. Every other session ends.',
     newPassword: 'New password',
@@ -45,7 +46,7 @@ export const peopleWords = {
     changed: 'Password changed. Other sessions have ended.',
     rooms: (names: string[]): string => (names.length ? names.join(', ') : 'Every room'),
     signOut: 'Sign out',
-    unsentTitle: (count: number): string => `${counted(count, 'count')} not in the record yet`,
+    unsentTitle: (count: number): string => `${counted(count, 'entry', 'entries')} not in the record yet`,
     unsent: (count: number): string =>
       `${count === 1 ? 'It stays' : 'They stay'} on this phone and ${count === 1 ? 'is' : 'are'} sent when you sign in again here. Nobody else can send or change ${count === 1 ? 'it' : 'them'}.`,
     stay: 'Stay and send',

@@ -192,7 +192,8 @@ export const policyWords = {
     `Entered by hand: ${[point !== null && `reorder at ${quantity(point)}`, par !== null && `par ${quantity(par)}`].filter(Boolean).join(', ') || 'nothing'}`,
   propose: 'Change the aim',
   proposePlain: 'Propose another aim',
-  proposed: (level: number, who: string): string => `${who} proposes ${odds(level)}`,
+  proposed: (level: number, who: string): string =>
+    `${who.charAt(0).toUpperCase()}${who.slice(1)} proposes ${odds(level)}`,
   levelTitle: 'Level over time',
   levelLegend: 'dots are counts, risers deliveries put away, hatching time below the line',
   levelAlternative: (from: string, to: string, outs: number): string =>

@@ -86,6 +86,8 @@ export const replenishmentWords = {
   noSupplier: 'No supplier is set for this item. Set one under Hospital, then it can be ordered.',
   none: 'Nothing to order',
   noneWhat: 'Every counted place is above its reorder point, with what is on order.',
+  noneYet:
+    'There are no places with an item yet. They are added under Hospital; what has to be ordered then appears here.',
   noneFiltered: 'Nothing below the line here.',
   draftTitle: (kind: Order['supplierKind']): string => (kind === 'stores' ? 'Requisition, draft' : 'Order, draft'),
   draftFor: (rooms: number): string => `for ${counted(rooms, 'room')}`,

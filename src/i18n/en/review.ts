@@ -42,7 +42,10 @@ export const reviewWords = {
       ? `${row.proposal.own ? 'you propose' : `${row.proposal.byName} proposes`} 1 in ${quantity(oddsIn(row.proposal.level))}`
       : '',
   none: 'Nothing here',
-  noneWhat: 'Nothing matches. Choose another list above.',
+  noneWhat: (show: ReviewShow): string =>
+    show === 'all'
+      ? 'No place holds an item yet. Places and items are added under Hospital.'
+      : 'No place belongs in this list now. Choose another list above.',
   data: (days: number, intervals: number): string =>
     `${quantity(Math.round(days))} days of counts, ${counted(intervals, 'stretch')} to learn from${intervals < 8 ? ': thin data' : ''}`,
 } as const
@@ -94,7 +97,9 @@ export const aimWords = {
   saved: (level: number, point: number | null): string =>
     point === null ? `Set: ${odds(level)}.` : `Set: ${odds(level)}. Reorder point ${quantity(point)}.`,
   proposedSaved: (level: number): string => `Proposed: ${odds(level)}. Nothing changes until it is decided.`,
-  waiting: (who: string, level: number): string => `${who} proposes ${odds(level)}`,
+  // A person's name, or the role of somebody whose name is not shown here.
+  waiting: (who: string, level: number): string =>
+    `${who.charAt(0).toUpperCase()}${who.slice(1)} proposes ${odds(level)}`,
   waitingWhy: (reason: string, reference: string, reviewBy: string): string =>
     `${reason} · ${reference} · review by ${day(reviewBy)}`,
   own: 'You proposed this. A second person decides it.',

@@ -1,3 +1,5 @@
+import { counted } from './format.ts'
+
 export const shellWords = {
   places: {
     today: 'Today',
@@ -20,9 +22,10 @@ export const shellWords = {
   toNight: 'Switch to night colours',
   toDay: 'Switch to day colours',
   offline: 'No connection. What you save stays on this phone until there is signal.',
-  ended: 'Your session has ended. Sign in again to send what is on this phone.',
+  ended: 'Your session has ended.',
+  endedLink: (unsent: number): string =>
+    unsent > 0 ? `Sign in again to send ${counted(unsent, 'entry', 'entries')}` : 'Sign in again',
   unchecked: 'Not checked with the record for more than 14 hours. You can finish and save counts.',
-  signInAgain: 'Sign in again',
   update: 'A newer version is ready.',
   updateNow: 'Use it now',
   notFoundTitle: 'There is no such page',

@@ -32,6 +32,7 @@ export const todayWords = {
   administratorHeading: (problems: number): string =>
     problems === 0 ? 'Everything is working' : `${counted(problems, 'thing')} to look at`,
   cutOffs: 'Next cut-offs',
+  noCutOffs: 'Nothing has to be ordered, so no cut-off is near.',
   left: (cut: CutOff, at: Moment): string => {
     const minutes = minutesLeft(cut.orderBy, at.now)
     return minutes < 0 ? 'passed' : `${duration(minutes)} left`
