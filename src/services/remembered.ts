@@ -14,6 +14,7 @@ const Remembered = z.object({
 export type Remembered = z.infer<typeof Remembered>
 
 const KEY = 'identity'
+const LEFT = 'signed-out'
 const store = () => createStore('brimline-identity', 'kept')
 
 /**
@@ -43,5 +44,26 @@ export async function forgetRemembered(): Promise<void> {
     await del(KEY, store())
   } catch {
     // Nothing is kept then.
+  }
+}
+
+/**
+ * A sign-out that the server has not heard of: without a network its cookie stays valid, and without this mark the next
+ * start would take the old session up again and send in its name.
+ */
+export async function markSignedOut(isPending: boolean): Promise<void> {
+  try {
+    if (isPending) await set(LEFT, true, store())
+    else await del(LEFT, store())
+  } catch {
+    // Then only the page that is open knows it.
+  }
+}
+
+export async function isSignOutPending(): Promise<boolean> {
+  try {
+    return (await get(LEFT, store())) === true
+  } catch {
+    return false
   }
 }

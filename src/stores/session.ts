@@ -8,7 +8,13 @@ import {
   type User,
 } from '#shared/contracts/people.ts'
 import { call, Offline, onContact } from '#src/services/api.ts'
-import { forgetRemembered, readRemembered, writeRemembered } from '#src/services/remembered.ts'
+import {
+  forgetRemembered,
+  isSignOutPending,
+  markSignedOut,
+  readRemembered,
+  writeRemembered,
+} from '#src/services/remembered.ts'
 
 /**
  * How the present identity is known. `remembered`: from this phone, the server has not been asked yet;
@@ -69,7 +75,21 @@ export const useSessionStore = defineStore('session', () => {
     await clearReads()
   }
 
+  /** Ends a session on the server that was left without a network; true when nothing of it is left. */
+  async function finishSignOut(): Promise<boolean> {
+    if (!(await isSignOutPending())) return true
+    try {
+      await call(signOutContract)
+    } catch (error) {
+      // A refusal means that there was nothing left to end.
+      if (error instanceof Offline) return false
+    }
+    await markSignedOut(false)
+    return true
+  }
+
   async function confirm(): Promise<void> {
+    if (!(await finishSignOut())) return
     const answer = await call(readSession)
     if (answer.user) await become(answer.user, answer.authzVersion ?? 0)
     else if (user.value) ended.value = true
@@ -99,7 +119,9 @@ export const useSessionStore = defineStore('session', () => {
 
   async function signIn(who: { email?: string; staffCode?: string; password: string }): Promise<void> {
     const answer = await call(signInContract, { body: who })
-    if (answer.user) await become(answer.user, answer.authzVersion ?? 0)
+    if (!answer.user) return
+    await markSignedOut(false)
+    await become(answer.user, answer.authzVersion ?? 0)
   }
 
   /** Ends the session. Without a network the phone forgets the person all the same. */
@@ -108,11 +130,17 @@ export const useSessionStore = defineStore('session', () => {
       await call(signOutContract)
     } catch (error) {
       if (!(error instanceof Offline)) throw error
+      await markSignedOut(true)
     } finally {
       ended.value = false
       await becomeNobody()
     }
   }
+
+  // At the sign-in page nothing else would tell the server.
+  window.addEventListener('online', () => {
+    if (!user.value) void finishSignOut()
+  })
 
   onContact({
     reply: () => {

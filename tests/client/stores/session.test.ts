@@ -2,7 +2,14 @@ import 'fake-indexeddb/auto'
 import { createPinia, setActivePinia } from 'pinia'
 import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest'
 import type { User } from '#shared/contracts/people.ts'
-import { forgetRemembered, REMEMBER_HOURS, readRemembered, writeRemembered } from '#src/services/remembered.ts'
+import {
+  forgetRemembered,
+  isSignOutPending,
+  markSignedOut,
+  REMEMBER_HOURS,
+  readRemembered,
+  writeRemembered,
+} from '#src/services/remembered.ts'
 import { useSessionStore } from '#src/stores/session.ts'
 
 const nurse: User = {
@@ -20,10 +27,14 @@ const answer = (body: unknown, status = 200): Response => new Response(JSON.stri
 beforeEach(async () => {
   setActivePinia(createPinia())
   await forgetRemembered()
+  await markSignedOut(false)
   fetching.mockReset()
   vi.stubGlobal('fetch', fetching)
 })
-afterEach(() => vi.unstubAllGlobals())
+afterEach(async () => {
+  await markSignedOut(false)
+  vi.unstubAllGlobals()
+})
 
 describe('the session', () => {
   it('knows the person without a network, from what the phone remembers', async () => {
@@ -91,5 +102,40 @@ describe('the session', () => {
     expect(session.user).toBeNull()
     expect(await readRemembered()).toBeNull()
     expect(clear).toHaveBeenCalledTimes(1)
+  })
+
+  it('never takes up again a session that was left without a network', async () => {
+    const before = useSessionStore()
+    fetching.mockResolvedValueOnce(answer({ user: nurse, authzVersion: 1 }, 201))
+    await before.signIn({ email: nurse.email, password: 'x' })
+    fetching.mockRejectedValueOnce(new TypeError('Failed to fetch'))
+    await before.signOut()
+
+    // The next start, with a network and the old cookie: the server is told first, and only then asked who is here.
+    setActivePinia(createPinia())
+    const said: string[] = []
+    let isOver = false
+    fetching.mockImplementation((_url, init) => {
+      said.push(init?.method ?? 'GET')
+      if (init?.method === 'DELETE') isOver = true
+      return Promise.resolve(
+        init?.method === 'DELETE'
+          ? new Response(null, { status: 204, headers })
+          : answer(isOver ? { user: null } : { user: nurse, authzVersion: 1 }),
+      )
+    })
+    const after = useSessionStore()
+    await after.restore()
+    expect(said).toEqual(['DELETE', 'GET'])
+    expect(after.user).toBeNull()
+  })
+
+  it('stays nobody while the server cannot be told', async () => {
+    await markSignedOut(true)
+    fetching.mockRejectedValue(new TypeError('Failed to fetch'))
+    const session = useSessionStore()
+    await session.restore()
+    expect(session.user).toBeNull()
+    expect(await isSignOutPending()).toBe(true)
   })
 })
