@@ -8,6 +8,7 @@ import { momentOf, viewBins } from '../counts/bin-view.service.ts'
 import { leaveRoom, startLevel, takeAssignment, touchBins } from '../counts/counts.service.ts'
 import type { Reader, Tx } from '../db/client.ts'
 import type { Actor } from '../http/context.ts'
+import { recompute } from '../policy/policy.service.ts'
 import * as repo from './bins.repository.ts'
 import { readHospital } from './hospital.service.ts'
 import { findItem } from './items.repository.ts'
@@ -43,10 +44,25 @@ async function givenCode(db: Reader, text: string): Promise<string> {
   return read.code
 }
 
-async function checkRoom(db: Reader, roomId: string): Promise<number> {
+async function checkRoom(db: Reader, actor: Scoped, roomId: string): Promise<number> {
   const room = await findRoom(db, Number(roomId))
-  if (!room || room.retiredAt) throw fieldProblem('/roomId', 'choose a room that is in use')
+  const inScope = actor.roomIds === null || actor.roomIds.includes(Number(roomId))
+  if (!room || room.retiredAt || !inScope) throw fieldProblem('/roomId', 'choose a room that is in use')
   return room.id
+}
+
+/** Places named beside what they may do. */
+type Scoped = Pick<Actor, 'id' | 'roomIds'>
+
+/** A level to fill up to below the level to order at would never be reached. */
+function checkLevels(levels: Levels): void {
+  if (
+    levels.enteredPar !== null &&
+    levels.enteredReorderPoint !== null &&
+    levels.enteredPar < levels.enteredReorderPoint
+  ) {
+    throw fieldProblem('/enteredPar', 'fill up to at least the reorder point')
+  }
 }
 
 async function checkItem(db: Reader, itemId: string | null): Promise<number | null> {
@@ -87,12 +103,13 @@ async function oneBin(db: Reader, clock: Clock, id: number): Promise<Bin> {
 export async function createBin(
   tx: Tx,
   clock: Clock,
-  actorId: number,
+  actor: Scoped,
   input: BinFields & { code?: string },
 ): Promise<Bin> {
   const now = clock.now()
-  const roomId = await checkRoom(tx, input.roomId)
+  const roomId = await checkRoom(tx, actor, input.roomId)
   const itemId = await checkItem(tx, input.itemId)
+  checkLevels(input)
   const overflowOf = await checkOverflow(tx, null, input.overflowOf, roomId, itemId)
   const code = input.code ? await givenCode(tx, input.code) : await freshCode(tx)
   const walkOrder = input.walkOrder ?? (await repo.lastWalkOrder(tx, roomId)) + 10
@@ -110,13 +127,14 @@ export async function createBin(
   if (itemId !== null) await assign(tx, now, id, itemId, input)
   await audit(tx, {
     at: now,
-    userId: actorId,
+    userId: actor.id,
     action: 'bin-added',
     subject: 'bin',
     subjectId: id,
     after: { ...input, code },
   })
-  await touchBins(tx, now, [id], 'entered')
+  await touchBins(tx, now, [id], null)
+  await recompute(tx, clock, id, 'entered')
   return oneBin(tx, clock, id)
 }
 
@@ -144,12 +162,16 @@ export async function updateBin(
   input: Partial<BinFields> & { retired?: boolean },
 ): Promise<Bin> {
   const bin = await repo.lockBin(tx, id)
-  if (!bin) throw problem('not-found')
+  if (!bin || (actor.roomIds !== null && !actor.roomIds.includes(bin.roomId))) throw problem('not-found')
   const now = clock.now()
   const assigned = await repo.findAssignment(tx, id)
   const before = { ...bin, assigned }
   const itemId = input.itemId === undefined ? (assigned?.itemId ?? null) : await checkItem(tx, input.itemId)
-  const roomId = input.roomId === undefined ? bin.roomId : await checkRoom(tx, input.roomId)
+  const roomId = input.roomId === undefined ? bin.roomId : await checkRoom(tx, actor, input.roomId)
+  const leaves = itemId !== (assigned?.itemId ?? null) || roomId !== bin.roomId
+  if (leaves && (await repo.liveOverflowOf(tx, id)).length) {
+    throw problem('in-use', 'Overflow places belong to this one. Retire them, or give them their own item, first.')
+  }
   if (input.retired && (await repo.liveOverflowOf(tx, id)).length)
     throw problem('in-use', 'Overflow places belong to this one. Retire or move them first.')
   const overflow =
@@ -175,7 +197,10 @@ export async function updateBin(
     after: input,
   })
   if (roomId !== bin.roomId || input.retired) await leaveRoom(tx, id, bin.roomId, roomId)
-  await touchBins(tx, now, [id, ...(overflowOf === null ? [] : [overflowOf])], 'entered')
+  await touchBins(tx, now, [id, ...(overflowOf === null ? [] : [overflowOf])], null)
+  await recompute(tx, clock, id, 'entered')
+  // A place that is no overflow any more leaves its main place with its own use again.
+  if (bin.overflowOf !== null && bin.overflowOf !== overflowOf) await recompute(tx, clock, bin.overflowOf, 'entered')
   return oneBin(tx, clock, id)
 }
 
@@ -193,6 +218,7 @@ async function applyAssignment(
       input.enteredReorderPoint === undefined ? (assigned?.enteredReorderPoint ?? null) : input.enteredReorderPoint,
     enteredPar: input.enteredPar === undefined ? (assigned?.enteredPar ?? null) : input.enteredPar,
   }
+  checkLevels(levels)
   if (itemId === (assigned?.itemId ?? null)) {
     if (assigned) await repo.updateAssignment(tx, assigned.id, levels)
     return

@@ -43,7 +43,7 @@ export function catalogueRoutes(routes: Routes): void {
     const { timeZone } = await hospital.readHospital(tx)
     return (await viewBin(tx, momentOf(clock, timeZone), actor, Number(params.id))).bin
   })
-  routes.write(c.createBin, ({ tx, clock, actor, body }) => bins.createBin(tx, clock, actor.id, body))
+  routes.write(c.createBin, ({ tx, clock, actor, body }) => bins.createBin(tx, clock, actor, body))
   routes.write(c.updateBin, ({ tx, clock, actor, params, body }) =>
     bins.updateBin(tx, clock, actor, Number(params.id), body),
   )

@@ -91,7 +91,16 @@ interface Written {
 
 function rowsOf(entry: BulkEntry): NewMovement[] {
   const { operation, end, other, effectiveAt } = entry
-  const judged = { operation, end, other, effectiveAt, statedAt: effectiveAt, flags: [], targetEnds: ['bin' as const] }
+  const judged = {
+    operation,
+    end,
+    other,
+    effectiveAt,
+    statedAt: effectiveAt,
+    flags: [],
+    targetEnds: ['bin' as const],
+    attention: null,
+  }
   return movementRows(judged, { now: entry.receivedAt, userId: entry.userId, deviceId: entry.deviceId })
 }
 

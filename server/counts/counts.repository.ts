@@ -42,11 +42,21 @@ export async function insertMovements(tx: Tx, rows: NewMovement[]): Promise<void
 }
 
 /** Kept once per entry and payload, however often the phone sends it. */
-export async function insertQuarantine(db: Db, row: typeof quarantine.$inferInsert): Promise<void> {
+export async function insertQuarantine(db: Db | Tx, row: typeof quarantine.$inferInsert): Promise<void> {
   await db
     .insert(quarantine)
     .values(row)
     .onDuplicateKeyUpdate({ set: { id: sql`id` } })
+}
+
+/** Whether an entry stands refused. */
+export async function wasRefused(db: Reader, opId: string): Promise<boolean> {
+  const [row] = await db
+    .select({ id: quarantine.id })
+    .from(quarantine)
+    .where(and(eq(quarantine.opId, opId), isNull(quarantine.closedAt)))
+    .limit(1)
+  return row !== undefined
 }
 
 export async function closeQuarantine(tx: Tx, opId: string, at: Date): Promise<void> {
@@ -95,7 +105,7 @@ export async function findBin(db: Reader, by: { id: number } | { code: string })
 
 export async function findBinOfItemInRoom(db: Reader, roomId: number, itemId: number) {
   const [row] = await db
-    .select({ id: bins.id, roomId: bins.roomId })
+    .select({ id: bins.id, roomId: bins.roomId, overflowOf: bins.overflowOf })
     .from(bins)
     .innerJoin(binAssignments, and(eq(binAssignments.binId, bins.id), isNull(binAssignments.assignedTo)))
     .where(

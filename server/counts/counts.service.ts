@@ -6,9 +6,10 @@ import { operationRows } from '#shared/ledger/operation-rows.ts'
 import { audit } from '../audit/audit.service.ts'
 import type { Clock } from '../clock.ts'
 import type { Db, Reader, Tx } from '../db/client.ts'
-import { duplicateKey, isDuplicate, isRetryable } from '../db/errors.ts'
+import { duplicateKey, isDuplicate, isRetryable, isUnreachable } from '../db/errors.ts'
 import { inTransaction } from '../db/transaction.ts'
 import type { Actor } from '../http/context.ts'
+import { illFormedAt, wellFormed } from '../http/well-formed.ts'
 import { enqueue } from '../jobs/jobs.service.ts'
 import { payloadHash } from './canonical.ts'
 import {
@@ -32,6 +33,7 @@ import {
   roomsOfBins,
   seenDevice,
   updateLevel,
+  type LevelRow,
   type MovementRow,
   type NewMovement,
 } from './counts.repository.ts'
@@ -42,7 +44,7 @@ interface Batch {
   deviceId: string
   userId: string
   appVersion: string
-  items: Record<string, unknown>[]
+  items: unknown[]
 }
 
 /** Takes in a batch, each entry in a transaction of its own; answers after all of them are committed. */
@@ -56,26 +58,37 @@ export async function syncOperations(db: Db, clock: Clock, actor: Actor, batch: 
 }
 
 /** One entry → one result; nothing that goes wrong with it touches its neighbours. */
-async function takeIn(
-  db: Db,
-  clock: Clock,
-  actor: Actor,
-  batch: Batch,
-  item: Record<string, unknown>,
-): Promise<SyncResult> {
-  const opId = typeof item.opId === 'string' ? item.opId.slice(0, 64) : ''
+async function takeIn(db: Db, clock: Clock, actor: Actor, batch: Batch, sent: unknown): Promise<SyncResult> {
+  const item = isRecord(sent) ? sent : { entry: sent }
+  const opId = typeof item.opId === 'string' ? item.opId.toWellFormed().slice(0, 64) : ''
   const entry = { opId, hash: payloadHash(item), item }
   const now = clock.now()
   try {
-    return await decide(db, now, actor, batch, entry)
-  } catch (error) {
-    if (error instanceof NotYet) return { opId, status: 'retry', code: error.code, message: error.message }
-    if (error instanceof Refusal) return refuse(db, now, actor, batch, entry, error)
-    if (isRetryable(error)) {
-      return { opId, status: 'retry', code: 'busy', message: 'The record is busy. It is sent again by itself.' }
+    try {
+      return await decide(db, now, actor, batch, entry)
+    } catch (error) {
+      if (!(error instanceof Refusal)) throw error
+      return await refuse(db, now, actor, batch, entry, error)
     }
-    throw error
+  } catch (error) {
+    return notTaken(opId, error)
   }
+}
+
+const isRecord = (value: unknown): value is Record<string, unknown> =>
+  typeof value === 'object' && value !== null && !Array.isArray(value)
+
+/** What was not taken in stays on the phone. One entry's fault never becomes its neighbours'. */
+function notTaken(opId: string, error: unknown): SyncResult {
+  if (error instanceof NotYet) return { opId, status: 'retry', code: error.code, message: error.message }
+  const again = 'It stays on the phone and is sent again by itself.'
+  if (isRetryable(error)) return { opId, status: 'retry', code: 'busy', message: `The record is busy. ${again}` }
+  // Without a database nothing of the batch can be taken in: the whole call says so.
+  if (isUnreachable(error)) throw error
+  process.stderr.write(
+    `Entry ${opId} could not be taken in: ${error instanceof Error ? error.message : String(error)}\n`,
+  )
+  return { opId, status: 'retry', code: 'internal', message: `The record could not take this in. ${again}` }
 }
 
 interface Entry {
@@ -87,6 +100,9 @@ interface Entry {
 async function decide(db: Db, now: Date, actor: Actor, batch: Batch, entry: Entry): Promise<SyncResult> {
   const known = entry.opId ? await findOperation(db, entry.opId) : null
   if (known) return repeated(known, entry.hash, actor)
+  if (illFormedAt(entry.item) !== null) {
+    throw new Refusal('invalid-operation', 'A text holds a broken character: type it anew.', true)
+  }
   const operation = readOperation(entry.item)
   try {
     const { flags } = await inTransaction(db, async (tx) =>
@@ -130,7 +146,7 @@ async function refuse(
   await insertQuarantine(db, {
     opId: entry.opId || entry.hash.slice(0, 36),
     payloadHash: entry.hash,
-    payload: entry.item,
+    payload: wellFormed(entry.item),
     userId: actor.id,
     deviceId: batch.deviceId,
     code: refusal.code,
@@ -157,10 +173,13 @@ async function record(
 ): Promise<{ flags: string[] }> {
   const { operation } = judged
   const ends = judged.other ? [judged.end, judged.other] : [judged.end]
-  await lockLevels(
-    tx,
-    ends.map((e) => e.binId),
-  )
+  const [level] = (
+    await lockLevels(
+      tx,
+      ends.map((e) => e.binId),
+    )
+  ).filter((l) => l.binId === judged.end.binId)
+  checkRelease(operation, level)
   const rows = movementRows(judged, { now, userId: actor.id, deviceId: batch.deviceId })
   const flags = [...judged.flags, ...(await flagsWith(tx, judged.end, rows))]
   for (const row of rows) row.flags = flags
@@ -185,6 +204,7 @@ async function record(
   for (const end of ends) await refold(tx, now, end.binId)
   await settle(tx, now, judged, flags)
   await closeQuarantine(tx, operation.opId, now)
+  if (judged.attention) await openAttentionFor(tx, now, actor, batch, judged.attention, received)
   await audit(tx, {
     at: now,
     userId: actor.id,
@@ -202,6 +222,33 @@ async function record(
   return { flags }
 }
 
+/** Taken in, and a person of that ward has to look at the rest. */
+async function openAttentionFor(
+  tx: Tx,
+  now: Date,
+  actor: Actor,
+  batch: { deviceId: string },
+  message: string,
+  received: Entry,
+): Promise<void> {
+  await insertQuarantine(tx, {
+    opId: received.opId,
+    payloadHash: received.hash,
+    payload: received.item,
+    userId: actor.id,
+    deviceId: batch.deviceId,
+    code: 'no-place-there',
+    message,
+    receivedAt: now,
+  })
+}
+
+/** Only what is held can be given back. */
+function checkRelease(operation: Judged['operation'], level: LevelRow | undefined): void {
+  if (operation.type !== 'release' || operation.quantity <= (level?.held ?? 0)) return
+  throw new Refusal('invalid-operation', `quantity: only ${level?.held ?? 0} are held here`, true)
+}
+
 async function settle(tx: Tx, now: Date, judged: Judged, flags: string[]): Promise<void> {
   if (judged.operation.type !== 'count') return
   await closeRecounts(tx, judged.end.binId, judged.operation.opId, now)
@@ -217,7 +264,8 @@ async function settle(tx: Tx, now: Date, judged: Judged, flags: string[]): Promi
 /** Ledger rows of a judged entry. */
 export function movementRows(judged: Judged, by: { now: Date; userId: number; deviceId: string }): NewMovement[] {
   const { operation } = judged
-  return operationRows(operation, judged.targetEnds).map((row) => {
+  const rows = operationRows(operation, judged.targetEnds).filter((row) => row.end === 'bin' || judged.other !== null)
+  return rows.map((row) => {
     const end = row.end === 'bin' ? judged.end : (judged.other ?? judged.end)
     return {
       opId: operation.opId,

@@ -1,4 +1,4 @@
-import { boolean, date, index, int, mysqlTable, unique, varchar } from 'drizzle-orm/mysql-core'
+import { bigint, boolean, date, index, int, mysqlTable, unique, varchar } from 'drizzle-orm/mysql-core'
 import { id, instant, jsonOf, ref } from '../db/columns.ts'
 import type { MovementType } from '#shared/contracts/bins.ts'
 
@@ -15,7 +15,7 @@ export const operations = mysqlTable(
     binId: ref(),
     userId: ref().notNull(),
     deviceId: varchar({ length: 64 }).notNull(),
-    localSeq: int().notNull(),
+    localSeq: bigint({ mode: 'number' }).notNull(),
     appVersion: varchar({ length: 40 }).notNull(),
     receivedAt: instant().notNull(),
     effectiveAt: instant().notNull(),
@@ -46,7 +46,7 @@ export const movements = mysqlTable(
     recordedAt: instant().notNull(),
     userId: ref().notNull(),
     deviceId: varchar({ length: 64 }).notNull(),
-    localSeq: int().notNull(),
+    localSeq: bigint({ mode: 'number' }).notNull(),
     reason: varchar({ length: 200 }),
     targetOpId: varchar({ length: 36 }),
     orderLineId: ref(),

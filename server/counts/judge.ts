@@ -10,6 +10,7 @@ import {
   listAssignments,
   listMovementsOfOps,
   roomExists,
+  wasRefused,
   type MovementRow,
 } from './counts.repository.ts'
 import { NotYet, Refusal } from './refusal.ts'
@@ -40,6 +41,8 @@ export interface Judged {
   statedAt: Date
   flags: string[]
   targetEnds: ('bin' | 'other')[]
+  /** What a person has to look at although the entry is taken in. */
+  attention: string | null
 }
 
 /** Reads the form of an entry. @throws {Refusal | NotYet} */
@@ -67,6 +70,7 @@ export async function judge(db: Reader, actor: Actor, operation: Operation, rece
   if ('targetOpId' in operation) return judgeAboutOther(db, actor, operation, statedAt, receivedAt, time.suspect)
   const bin = await binOf(db, operation)
   const other = operation.type === 'transfer' ? await otherEnd(db, operation, bin) : null
+  const nowhere = operation.type === 'transfer' && other === null
   const inScope = scopeOf(actor, bin.roomId) || (other !== null && scopeOf(actor, other.roomId))
   if (!inScope) throw new Refusal('out-of-scope', 'This place is outside your rooms.', false)
   const { end, changed } = await endOf(
@@ -76,7 +80,7 @@ export async function judge(db: Reader, actor: Actor, operation: Operation, rece
     statedAt,
   )
   if ('orderLineId' in operation && operation.orderLineId !== undefined)
-    await checkLine(db, Number(operation.orderLineId), end)
+    await checkLine(db, Number(operation.orderLineId), end, bin)
   const flags = [...(time.suspect ? ['clock-suspect'] : []), ...(changed ? ['item-changed'] : [])]
   return {
     operation,
@@ -86,6 +90,9 @@ export async function judge(db: Reader, actor: Actor, operation: Operation, rece
     statedAt,
     flags,
     targetEnds: ['bin'],
+    attention: nowhere
+      ? 'Stock was moved to a room that has no place for this item. Put it where it belongs and count it.'
+      : null,
   }
 }
 
@@ -117,6 +124,7 @@ const scopeOf = (actor: Actor, roomId: number): boolean => actor.roomIds === nul
 interface BinRef {
   id: number
   roomId: number
+  overflowOf: number | null
 }
 
 async function binOf(db: Reader, operation: Operation): Promise<BinRef> {
@@ -126,16 +134,25 @@ async function binOf(db: Reader, operation: Operation): Promise<BinRef> {
     if (!bin) throw new Refusal('invalid-operation', 'orderLineId: there is no such line', false)
     return bin
   }
-  const bin = operation.binId
-    ? await findBin(db, { id: Number(operation.binId) })
-    : await findBin(db, { code: foldShelfCode(operation.binCode ?? '') })
-  if (!bin)
+  const byId = operation.binId ? await findBin(db, { id: Number(operation.binId) }) : null
+  const byCode = operation.binCode ? await findBin(db, { code: foldShelfCode(operation.binCode) }) : null
+  const bin = operation.binId ? byId : byCode
+  if (!bin) {
     throw new Refusal('unknown-bin', 'No place has this code. Check the label, or ask the coordinator to add it.', true)
+  }
+  if (operation.binCode && byCode?.id !== bin.id) {
+    throw new Refusal('invalid-operation', 'binCode: it is the code of another place than binId', true)
+  }
   return bin
 }
 
-async function otherEnd(db: Reader, operation: Extract<Operation, { type: 'transfer' }>, bin: BinRef): Promise<BinRef> {
+async function otherEnd(
+  db: Reader,
+  operation: Extract<Operation, { type: 'transfer' }>,
+  bin: BinRef,
+): Promise<BinRef | null> {
   const other = await namedOtherEnd(db, operation, bin)
+  if (other === 'no-place') return null
   if (!other)
     throw new Refusal('unknown-bin', 'The other end of this move is not known. Name its place or its room.', true)
   if (other.id === bin.id) throw new Refusal('invalid-operation', 'toBinId: a move needs two places', true)
@@ -146,7 +163,7 @@ async function namedOtherEnd(
   db: Reader,
   operation: Extract<Operation, { type: 'transfer' }>,
   bin: BinRef,
-): Promise<BinRef | null> {
+): Promise<BinRef | null | 'no-place'> {
   if (operation.toBinId) return findBin(db, { id: Number(operation.toBinId) })
   if (operation.toBinCode) return findBin(db, { code: foldShelfCode(operation.toBinCode) })
   const roomId = Number(operation.toRoomId ?? 0)
@@ -154,9 +171,7 @@ async function namedOtherEnd(
   const [now] = await listAssignments(db, bin.id)
   const itemId = operation.itemId ? Number(operation.itemId) : now?.itemId
   const found = itemId === undefined ? null : await findBinOfItemInRoom(db, roomId, itemId)
-  if (!found)
-    throw new Refusal('item-mismatch', 'That room has no place for this item. Tell its coordinator what moved.', true)
-  return found
+  return found ?? 'no-place'
 }
 
 /** The assignment an entry belongs to: the one the phone showed, even when the bin holds something else by now. */
@@ -191,11 +206,20 @@ async function endOf(
   }
 }
 
-async function checkLine(db: Reader, lineId: number, end: End): Promise<void> {
+/** An order line is put away in its own place or in that place's overflow. */
+async function checkLine(db: Reader, lineId: number, end: End, bin: BinRef): Promise<void> {
   const line = await findOrderLine(db, lineId)
-  if (!line || line.state === 'draft')
+  if (!line || line.state === 'draft') {
     throw new Refusal('invalid-operation', 'orderLineId: there is no such order on its way', false)
+  }
   if (line.itemId !== end.itemId) throw new Refusal('item-mismatch', 'That order is for another item.', true)
+  if (line.binId !== bin.id && line.binId !== bin.overflowOf) {
+    throw new Refusal(
+      'item-mismatch',
+      'That order is for another place. Put it away there, or without the order.',
+      true,
+    )
+  }
 }
 
 type AboutOther = Extract<Operation, { targetOpId: string }>
@@ -208,11 +232,17 @@ async function judgeAboutOther(
   receivedAt: Date,
   suspect: boolean,
 ): Promise<Judged> {
+  if (operation.targetOpId === operation.opId)
+    throw new Refusal('invalid-operation', 'targetOpId: an entry cannot be about itself', false)
   const targets = await listMovementsOfOps(db, [operation.targetOpId])
   const target = targets.find((t) => t.part === 0)
+  if (!target && (await wasRefused(db, operation.targetOpId))) {
+    throw new Refusal('target-refused', 'The entry this is about was not taken in. Settle that one first.', false)
+  }
   if (!target) throw new NotYet('target-missing', 'The entry this is about has not arrived yet.')
   if (!targets.some((t) => scopeOf(actor, t.roomId)))
     throw new Refusal('out-of-scope', 'This place is outside your rooms.', false)
+  await checkNamed(db, operation, targets)
   checkOwn(actor, operation, target, receivedAt)
   if (target.type === 'withdraw')
     throw new Refusal('invalid-operation', 'targetOpId: this was taken back already', false)
@@ -236,7 +266,16 @@ async function judgeAboutOther(
     statedAt,
     flags: suspect ? ['clock-suspect'] : [],
     targetEnds: second ? ['bin', 'other'] : ['bin'],
+    attention: null,
   }
+}
+
+/** A place that is named has to be one the target is about. */
+async function checkNamed(db: Reader, operation: AboutOther, targets: MovementRow[]): Promise<void> {
+  if (!operation.binId && !operation.binCode) return
+  const bin = await binOf(db, operation)
+  if (targets.some((t) => t.binId === bin.id)) return
+  throw new Refusal('invalid-operation', 'binId: the entry it names is about another place', false)
 }
 
 /** Ward staff mend their own entries for one shift; a coordinator any, with a reason. */

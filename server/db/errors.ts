@@ -24,6 +24,10 @@ const retryable = new Set([1213, 1205, 1020, 1047])
 export const isRetryable = (error: unknown): boolean => retryable.has(driverError(error)?.errno ?? 0)
 export const isDuplicate = (error: unknown): boolean => driverError(error)?.errno === 1062
 
+/** The database cannot be reached at all. */
+export const isUnreachable = (error: unknown): boolean =>
+  /^(ECONN|PROTOCOL_|EPIPE|ETIMEDOUT|ER_ACCESS|ER_CON_COUNT)/.test(driverError(error)?.code ?? '')
+
 /** Name of the unique key a duplicate ran into; the driver gives it in the message only. */
 export function duplicateKey(error: unknown): string {
   return /for key '([^']+)'/.exec(driverError(error)?.sqlMessage ?? '')?.[1] ?? ''
@@ -37,7 +41,7 @@ export function toProblem(error: unknown): unknown {
   if (driver.errno === 1062) return problem('already-exists', undefined, { cause: error })
   if (driver.errno === 1451) return problem('in-use', undefined, { cause: error })
   if (driver.errno === 1452) return problem('not-found', 'Something this refers to does not exist.', { cause: error })
-  if (driver.code && /^(ECONN|PROTOCOL_|EPIPE|ETIMEDOUT|ER_ACCESS|ER_CON_COUNT)/.test(driver.code)) {
+  if (isUnreachable(error)) {
     return problem('not-ready', undefined, { cause: error })
   }
   return error

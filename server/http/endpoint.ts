@@ -1,12 +1,13 @@
 import express, { type NextFunction, type Request, type Response, type Router } from 'express'
-import type { z } from 'zod'
+import { z } from 'zod'
 import type { Contract } from '#shared/contracts/contract.ts'
-import { problem } from '#shared/contracts/problems.ts'
+import { fieldProblem, problem } from '#shared/contracts/problems.ts'
 import type { FieldError } from '#shared/kernel/problem.ts'
 import type { Clock } from '../clock.ts'
 import type { Db, Tx } from '../db/client.ts'
 import { inTransaction } from '../db/transaction.ts'
 import type { Actor, AppDeps } from './context.ts'
+import { illFormedAt, pointerOf } from './well-formed.ts'
 
 /** Every registered route; the permission test and the OpenAPI document read it. */
 export interface RegisteredRoute {
@@ -26,16 +27,16 @@ export interface Call<C extends Contract, T> {
   res: Response
 }
 
-const json = express.json({ limit: '64kb', strict: true, type: 'application/json' })
+const json = express.json({ limit: '64kb', strict: false, type: 'application/json' })
 const bodyless = new Set(['GET', 'DELETE'])
 
 /** JSON pointers for what zod found. */
 export function fieldErrors(error: z.ZodError, root = ''): FieldError[] {
   return error.issues.flatMap((issue) => {
-    const at = `${root}/${issue.path.map(String).join('/')}`.replace(/\/$/, '') || root || '/'
+    const at = root + pointerOf(issue.path)
     if (issue.code === 'unrecognized_keys') {
       return issue.keys.map((key) => ({
-        pointer: `${at === '/' ? '' : at}/${key}`,
+        pointer: at + pointerOf([key]),
         detail: 'this field is not known here',
       }))
     }
@@ -47,7 +48,16 @@ function parsed<T extends z.ZodType>(schema: T, value: unknown, root = ''): z.ou
   const result = schema.safeParse(value)
   if (result.success) return result.data as z.output<T>
   const errors = fieldErrors(result.error, root)
-  throw problem('invalid-request', errors[0] ? `${errors[0].pointer}: ${errors[0].detail}` : undefined, { errors })
+  throw problem('invalid-request', errors[0] ? `${errors[0].pointer || '/'}: ${errors[0].detail}` : undefined, {
+    errors,
+  })
+}
+
+/** Ids are opaque: one that cannot be is simply not there. */
+function parsedParams<C extends Contract>(contract: C, params: unknown): z.output<C['params']> {
+  const result = contract.params.safeParse(params)
+  if (!result.success) throw problem('not-found')
+  return result.data as z.output<C['params']>
 }
 
 /** Express' own body parser, awaited, after rights were checked. */
@@ -61,6 +71,15 @@ async function readBody(req: Request, res: Response, contract: Contract): Promis
     json(req, res, (error?: unknown) => (error ? reject(error as Error) : resolve()))
   })
   return req.body as unknown
+}
+
+/** A call without a body may carry an empty object; text has to be text, but where each entry is judged alone. */
+function bodyFor(contract: Contract, body: unknown): unknown {
+  const empty = typeof body === 'object' && body !== null && Object.keys(body).length === 0
+  if (empty && contract.body instanceof z.ZodUndefined) return undefined
+  const broken = contract.judgesEntries ? null : illFormedAt(body)
+  if (broken !== null) throw fieldProblem(broken, 'this text has a broken character: type it anew')
+  return body
 }
 
 export function mayCall(contract: Contract, actor: Actor | null): 'yes' | 'sign-in' | 'no' {
@@ -100,12 +119,12 @@ export class Routes {
       const right = mayCall(contract, actor)
       if (right === 'sign-in') throw problem('not-signed-in')
       if (right === 'no') throw problem('not-allowed')
-      const body = await readBody(req, res, contract)
+      const body = bodyFor(contract, await readBody(req, res, contract))
       const answer = await run({
         db: this.deps.db,
         clock: this.deps.clock,
         actor: actor as Actor,
-        params: parsed(contract.params, req.params) as z.output<C['params']>,
+        params: parsedParams(contract, req.params),
         query: parsed(contract.query, req.query) as z.output<C['query']>,
         body: parsed(contract.body, body) as z.output<C['body']>,
         req,

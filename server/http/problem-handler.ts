@@ -8,13 +8,8 @@ import { toProblem } from '../db/errors.ts'
 function fromParser(error: unknown): unknown {
   if (!(error instanceof Error) || !('type' in error)) return error
   if (error.type === 'entity.too.large') return problem('batch-too-large')
-  if (
-    error.type === 'entity.parse.failed' ||
-    error.type === 'charset.unsupported' ||
-    error.type === 'encoding.unsupported'
-  ) {
-    return problem('unreadable-body')
-  }
+  if (error.type === 'charset.unsupported' || error.type === 'encoding.unsupported') return problem('not-json')
+  if (error.type === 'entity.parse.failed') return problem('unreadable-body')
   return error
 }
 

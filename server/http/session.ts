@@ -41,6 +41,7 @@ export function sessions(deps: AppDeps): RequestHandler[] {
   )
   authenticators.set(deps, auth)
   return [
+    ...(secure ? [overHttps] : []),
     session({
       name: secure ? '__Host-brimline' : 'brimline.sid',
       secret: deps.sessionSecrets,
@@ -48,13 +49,18 @@ export function sessions(deps: AppDeps): RequestHandler[] {
       resave: false,
       saveUninitialized: false,
       rolling: false,
-      proxy: deps.trustProxy !== null,
       cookie: { httpOnly: true, sameSite: 'lax', path: '/', secure, maxAge: sessionHours * 3_600_000 },
     }),
     auth.initialize() as RequestHandler,
     auth.session() as RequestHandler,
     idleLock(deps),
   ]
+}
+
+/** PUBLIC_URL says how people come here, whatever the proxy in front passes on. */
+const overHttps: RequestHandler = (req, _res, next) => {
+  Object.defineProperty(req, 'secure', { value: true, configurable: true })
+  next()
 }
 
 const authenticators = new WeakMap<AppDeps, InstanceType<typeof passport.Passport>>()

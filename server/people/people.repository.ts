@@ -1,6 +1,6 @@
 import { and, asc, count, eq, gt, inArray, isNotNull, isNull, like, lt, ne, or, sql, type SQL } from 'drizzle-orm'
 import { rooms } from '../catalogue/catalogue.tables.ts'
-import type { Reader, Tx } from '../db/client.ts'
+import type { Db, Reader, Tx } from '../db/client.ts'
 import type { Role } from '#shared/contracts/contract.ts'
 import { passwordResets, personNames, sessions, signInAttempts, userRooms, users } from './people.tables.ts'
 
@@ -183,10 +183,15 @@ export async function countFailures(
 }
 
 export async function insertFailure(
-  db: Reader,
+  db: Db,
   row: { accountKey: string; addressKey: string; failedAt: Date },
-): Promise<void> {
-  await db.insert(signInAttempts).values(row)
+): Promise<number> {
+  const [made] = await db.insert(signInAttempts).values(row).$returningId()
+  return made!.id
+}
+
+export async function deleteFailure(db: Db, id: number): Promise<void> {
+  await db.delete(signInAttempts).where(eq(signInAttempts.id, id))
 }
 
 export async function clearFailures(db: Reader, accountKey: string): Promise<void> {

@@ -27,7 +27,7 @@ import {
   type Person,
   type PersonChange,
 } from './people.repository.ts'
-import { attemptKeys, checkAttempts, forgetFailures, recordFailure } from './throttle.ts'
+import { attemptKeys, countAttempt, forgetFailures } from './throttle.ts'
 
 export const toActor = (p: Person): Actor => ({
   id: p.id,
@@ -61,16 +61,14 @@ export async function checkSignIn(
   password: string,
   address: string,
 ): Promise<Person | null> {
-  const keys = attemptKeys(by.email ?? by.staffCode ?? '', address)
-  const wait = await checkAttempts(db, clock, keys)
-  if (wait) await new Promise((resolve) => setTimeout(resolve, wait))
   const person = await findPersonBySignIn(db, by)
+  // One account, whether it is named by e-mail or by staff code.
+  const keys = attemptKeys(person ? `person ${person.id}` : (by.email ?? by.staffCode ?? ''), address)
+  const wait = await countAttempt(db, clock, keys)
+  if (wait) await new Promise((resolve) => setTimeout(resolve, wait))
   decoy ??= hashPassword(randomBytes(16).toString('hex'))
   const matches = await verifyPassword(person?.passwordHash ?? (await decoy), password)
-  if (!person || person.retiredAt || !matches) {
-    await recordFailure(db, clock, keys)
-    return null
-  }
+  if (!person || person.retiredAt || !matches) return null
   await forgetFailures(db, keys)
   return person
 }

@@ -76,7 +76,7 @@ async function calculate(tx: Tx, now: Date, hospital: Money, view: BinView): Pro
 }
 
 /** The demand process of a place and its overflow places, from what their ledgers hold up to a moment. */
-export async function learnFrom(db: Reader, view: BinView, until: Date): Promise<LearnedDemand> {
+export async function learnFrom(db: Reader, view: BinView, until: Date | null): Promise<LearnedDemand> {
   const rowsOf = async (binId: number, assignmentId: number | null) =>
     (await foldedLedger(db, binId, assignmentId, until)).folded.rows
   const own = await rowsOf(view.row.id, view.row.assignmentId)
@@ -95,11 +95,15 @@ const enteredLevels = (view: BinView): Levels => ({
       : null,
 })
 
+/** The count that closed the last interval: recounts within half a day are no counts of their own. */
+const closingCount = (calculation: Calculation): string | null =>
+  calculation.learned.intervals.at(-1)?.closingOpId ?? null
+
 /** Counts in a row whose calculation stood below the figure in force. */
 function lowerCounts(before: repo.PolicyRow | null, calculation: Calculation): number {
   const computed = calculation.result.reorderPoint
   if (!before || computed === null || before.reorderPoint === null || computed >= before.reorderPoint) return 0
-  const isNewCount = before.lastCountOpId !== (calculation.learned.lastCount?.opId ?? null)
+  const isNewCount = before.lastCountOpId !== closingCount(calculation)
   return isNewCount ? before.lowerCounts + 1 : before.lowerCounts
 }
 
@@ -138,7 +142,7 @@ async function store(
     await repo.updatePolicy(tx, known.id, {
       confirmedAt: now,
       lowerCounts: lower,
-      lastCountOpId: calculation.learned.lastCount?.opId ?? null,
+      lastCountOpId: closingCount(calculation),
     })
     return false
   }
@@ -152,7 +156,7 @@ async function store(
     protection: calculation.protection,
     cause,
     lowerCounts: settled.changed ? 0 : lower,
-    lastCountOpId: calculation.learned.lastCount?.opId ?? null,
+    lastCountOpId: closingCount(calculation),
     asOf: now,
     inForceSince: known && !settled.changed ? known.inForceSince : now,
     createdAt: now,

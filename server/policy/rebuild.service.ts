@@ -25,7 +25,7 @@ export async function rebuildAll(db: Db, clock: Clock, say: (line: string) => vo
   for (const [i, view] of views.entries()) {
     const level = await levelDifference(db, view.row.id)
     if (level) report(`Place ${view.bin.display}: ${level}`)
-    const intervals = await intervalDifference(db, clock, view)
+    const intervals = await intervalDifference(db, view)
     if (intervals) report(`Place ${view.bin.display}: ${intervals}`)
     if ((i + 1) % 100 === 0) say(`  ${i + 1} of ${views.length} places looked at`)
   }
@@ -43,7 +43,7 @@ export async function rebuildAll(db: Db, clock: Clock, say: (line: string) => vo
 }
 
 /** A bin whose job still waits may lag behind its ledger for a few seconds; after that any difference is a fault. */
-async function intervalDifference(db: Db, clock: Clock, view: BinView): Promise<string | null> {
+async function intervalDifference(db: Db, view: BinView): Promise<string | null> {
   const stored = (await storedIntervals(db, view.row.id)).filter((r) => r.assignmentId === view.row.assignmentId)
   if (
     view.row.assignmentId === null ||
@@ -52,7 +52,7 @@ async function intervalDifference(db: Db, clock: Clock, view: BinView): Promise<
     view.bin.retired
   )
     return null
-  const learned = await learnFrom(db, view, clock.now())
+  const learned = await learnFrom(db, view, null)
   const fresh = intervalRows(view.row.id, view.row.assignmentId, learned).map(intervalKey)
   const kept = stored.map(intervalKey)
   const same = fresh.length === kept.length && new Set([...fresh, ...kept]).size === fresh.length

@@ -210,7 +210,7 @@ export async function updateOrder(
       lines.map((l) => l.binId),
     )
   }
-  if (input.expectedOn && order.state !== 'draft' && !underWay.includes(order.state)) throw problem('order-changed')
+  if (input.expectedOn && order.state !== 'draft') await lockUnderWay(tx, id)
   await repo.updateOrder(tx, id, input.expectedOn ? { expectedOn: input.expectedOn } : {})
   await audit(tx, {
     at: clock.now(),
@@ -275,7 +275,7 @@ export async function sendOrder(tx: Tx, clock: Clock, actor: Actor, id: number):
 async function lockUnderWay(tx: Tx, id: number): Promise<Order> {
   const row = await repo.lockOrder(tx, id)
   if (!row) throw problem('not-found')
-  if (row.state === 'draft') throw problem('order-not-sent')
+  if (row.state === 'draft') throw problem('order-not-sent', 'This is still a draft. Send it first.')
   const order = await readOrder(tx, id)
   if (!stillOpen.has(order.state)) throw problem('order-changed', `This order is ${order.state} already.`)
   return order

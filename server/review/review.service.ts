@@ -65,6 +65,7 @@ export async function setLevel(
   const now = clock.now()
   const inForce = actor.role === 'reviewer' && !twoPersons
   if (inForce) await repo.endOverridesOfBin(tx, binId, actor.id, now)
+  else await refuseSecondProposal(tx, actor, binId)
   await repo.declineProposalsOfBin(tx, binId, actor.id, now)
   const id = await repo.insertOverride(tx, {
     binId,
@@ -85,6 +86,14 @@ export async function setLevel(
   })
   if (inForce) await recompute(tx, clock, binId, 'service-level')
   return { inForce }
+}
+
+/** What somebody else proposed is decided, not pushed aside. */
+async function refuseSecondProposal(tx: Tx, actor: Actor, binId: number): Promise<void> {
+  const [pending] = await repo.listOverrides(tx, [binId], [], ['proposed'])
+  if (pending && pending.proposedBy !== actor.id) {
+    throw problem('already-exists', 'Somebody else has proposed an aim for this place. It has to be decided first.')
+  }
 }
 
 /** Ends the aim set for one bin; its item's or class level holds again. */

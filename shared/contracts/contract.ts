@@ -30,6 +30,8 @@ export interface Contract<
   answer: A
   /** Status of success; 204 sends no body. */
   status: number
+  /** Entries in the body are judged one by one, also for what text they hold. */
+  judgesEntries: boolean
 }
 
 interface Parts<P extends z.ZodType, Q extends z.ZodType, B extends z.ZodType, A extends z.ZodType> {
@@ -42,6 +44,7 @@ interface Parts<P extends z.ZodType, Q extends z.ZodType, B extends z.ZodType, A
   body?: B
   answer?: A
   status?: number
+  judgesEntries?: boolean
 }
 
 const nothing = z.object({})
@@ -63,11 +66,12 @@ export function contract<
     body: parts.body ?? (z.undefined() as unknown as B),
     answer: parts.answer ?? (z.undefined() as unknown as A),
     status: parts.status ?? (parts.answer ? 200 : 204),
+    judgesEntries: parts.judgesEntries ?? false,
   }
 }
 
 /** Opaque id, a JSON string. */
-export const Id = z.string().regex(/^[0-9]{1,20}$/, 'not an id')
+export const Id = z.string().regex(/^[1-9][0-9]{0,15}$/, 'not an id')
 export type Id = z.infer<typeof Id>
 
 /** UUID made on the device (version 7). */
@@ -81,7 +85,8 @@ export const Instant = z.iso.datetime({ offset: false, precision: 3 })
 export const DateOnly = z.iso.date()
 
 /** Whole units of use. */
-export const Quantity = z.number().int().min(0).max(99_999)
+const wholeUnits = 'give a whole number from 0 to 99,999'
+export const Quantity = z.number({ error: wholeUnits }).int(wholeUnits).min(0, wholeUnits).max(99_999, wholeUnits)
 
 export const idParams = z.object({ id: Id })
 

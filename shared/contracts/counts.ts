@@ -28,43 +28,47 @@ const reason = z.string().trim().min(1).max(200)
 
 /** One entry of the outbox, as sent. Strict: a field that is not listed is refused. */
 export const Operation = z
-  .discriminatedUnion('type', [
-    z.strictObject({ ...every, type: z.literal('count'), quantity: Quantity }),
-    z.strictObject({
-      ...every,
-      type: z.literal('count.correct'),
-      targetOpId: OpId,
-      quantity: Quantity,
-      reason: reason.optional(),
-    }),
-    z.strictObject({ ...every, type: z.literal('count.withdraw'), targetOpId: OpId, reason: reason.optional() }),
-    z.strictObject({ ...every, type: z.literal('movement.withdraw'), targetOpId: OpId, reason: reason.optional() }),
-    z.strictObject({
-      ...every,
-      type: z.literal('receipt'),
-      quantity: Quantity,
-      orderLineId: Id.optional(),
-      lot: optionalText(40),
-      expiry: z.iso.date().optional(),
-      reason: reason.optional(),
-    }),
-    z.strictObject({ ...every, type: z.literal('arrival'), orderLineId: Id, quantity: Quantity }),
-    z.strictObject({
-      ...every,
-      type: z.literal('transfer'),
-      quantity: Quantity,
-      direction: z.enum(['out', 'in']),
-      toBinId: Id.optional(),
-      toBinCode: z.string().max(40).optional(),
-      toRoomId: Id.optional(),
-    }),
-    z.strictObject({ ...every, type: z.literal('wastage'), quantity: Quantity, reason }),
-    z.strictObject({ ...every, type: z.literal('take'), quantity: Quantity }),
-    z.strictObject({ ...every, type: z.literal('hold'), quantity: Quantity, lot: optionalText(40), reason }),
-    z.strictObject({ ...every, type: z.literal('release'), quantity: Quantity, lot: optionalText(40), reason }),
-    z.strictObject({ ...every, type: z.literal('signal') }),
-    z.strictObject({ ...every, type: z.literal('flag'), reason }),
-  ])
+  .discriminatedUnion(
+    'type',
+    [
+      z.strictObject({ ...every, type: z.literal('count'), quantity: Quantity }),
+      z.strictObject({
+        ...every,
+        type: z.literal('count.correct'),
+        targetOpId: OpId,
+        quantity: Quantity,
+        reason: reason.optional(),
+      }),
+      z.strictObject({ ...every, type: z.literal('count.withdraw'), targetOpId: OpId, reason: reason.optional() }),
+      z.strictObject({ ...every, type: z.literal('movement.withdraw'), targetOpId: OpId, reason: reason.optional() }),
+      z.strictObject({
+        ...every,
+        type: z.literal('receipt'),
+        quantity: Quantity,
+        orderLineId: Id.optional(),
+        lot: optionalText(40),
+        expiry: z.iso.date().optional(),
+        reason: reason.optional(),
+      }),
+      z.strictObject({ ...every, type: z.literal('arrival'), orderLineId: Id, quantity: Quantity }),
+      z.strictObject({
+        ...every,
+        type: z.literal('transfer'),
+        quantity: Quantity,
+        direction: z.enum(['out', 'in']),
+        toBinId: Id.optional(),
+        toBinCode: z.string().max(40).optional(),
+        toRoomId: Id.optional(),
+      }),
+      z.strictObject({ ...every, type: z.literal('wastage'), quantity: Quantity, reason }),
+      z.strictObject({ ...every, type: z.literal('take'), quantity: Quantity }),
+      z.strictObject({ ...every, type: z.literal('hold'), quantity: Quantity, lot: optionalText(40), reason }),
+      z.strictObject({ ...every, type: z.literal('release'), quantity: Quantity, lot: optionalText(40), reason }),
+      z.strictObject({ ...every, type: z.literal('signal') }),
+      z.strictObject({ ...every, type: z.literal('flag'), reason }),
+    ],
+    { error: 'this kind of entry is not known here' },
+  )
   .refine((o) => Boolean(o.binId) || Boolean(o.binCode) || o.type === 'arrival', {
     path: ['binId'],
     message: 'name the bin by id or code',
@@ -92,7 +96,7 @@ export const SyncBody = z.strictObject({
   appVersion: z.string().max(40),
   sentAt: Instant,
   /** At most 100 (more is 413). Judged one by one: a malformed item is refused alone. */
-  items: z.array(z.record(z.string(), z.unknown())),
+  items: z.array(z.unknown()),
 })
 export const SyncAnswer = z.object({
   serverTime: Instant,
@@ -108,6 +112,7 @@ export const syncOperations = contract({
   allow: ['nurse', 'coordinator'],
   body: SyncBody,
   answer: SyncAnswer,
+  judgesEntries: true,
 })
 
 /** What a phone needs of an item to count it. */

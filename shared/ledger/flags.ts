@@ -35,17 +35,25 @@ function countFlags<R extends OwnedRow>(folded: Fold<R>, at: number, packSize: n
   const before = onHandBefore(folded, at)
   const previous = lastStandingCount(folded, at)
   if (previous && before !== null && row.quantity - before > packSize) flags.push('rise-unexplained')
-  const close = previous && row.effectiveAt - previous.effectiveAt <= sameHourMs
-  if (
-    close &&
-    previous.userId !== row.userId &&
-    before !== null &&
-    Math.abs(row.quantity - before) > tolerance(before)
-  ) {
-    flags.push('count-differs')
-  }
+  if (differs(folded, at) || differs(folded, nextStandingCount(folded, at))) flags.push('count-differs')
   if (nearOthers(folded, at, movesStock)) flags.push('near-movement')
   return flags
+}
+
+/** Whether a count and the one before it, by two people within two hours, do not agree. */
+function differs<R extends OwnedRow>(folded: Fold<R>, at: number | null): boolean {
+  if (at === null) return false
+  const row = folded.rows[at]!.row
+  const previous = lastStandingCount(folded, at)
+  const before = onHandBefore(folded, at)
+  if (!previous || before === null || previous.userId === row.userId) return false
+  return row.effectiveAt - previous.effectiveAt <= sameHourMs && Math.abs(row.quantity - before) > tolerance(before)
+}
+
+/** The order in which entries arrive must not matter: a late count is held against the one after it too. */
+function nextStandingCount<R extends LedgerRow>(folded: Fold<R>, at: number): number | null {
+  const next = folded.rows.findIndex((f, i) => i > at && f.voidedBy === null && f.row.type === 'count')
+  return next < 0 ? null : next
 }
 
 /** Units the record held just before row `at`; null before the first count. */

@@ -43,12 +43,12 @@ export function fold<R extends LedgerRow>(rows: readonly R[]): Fold<R> {
         lastCount = { quantity: row.quantity, effectiveAt: row.effectiveAt, opId: row.opId }
       } else if (movesStock(row.type)) {
         onHand += row.quantity
-        if (row.type === 'hold' || row.type === 'release') held -= row.quantity
+        if (row.type === 'hold' || row.type === 'release') held = Math.max(0, held - row.quantity)
       }
     }
     return { row, onHandAfter: onHand, voidedBy }
   })
-  return { onHand, held: Math.max(0, held), lastCount, rows: folded }
+  return { onHand, held, lastCount, rows: folded }
 }
 
 const key = (row: LedgerRow): string => `${row.opId}/${row.part}`

@@ -86,7 +86,8 @@ const { userId, binIds } = await inTransaction(database.db, async (tx) => {
     enteredPar: null,
   }
   const made: string[] = []
-  for (let i = 0; i < perBatch; i += 1) made.push((await createBin(tx, clock, actorId, fields)).id)
+  for (let i = 0; i < perBatch; i += 1)
+    made.push((await createBin(tx, clock, { id: actorId, roomIds: null }, fields)).id)
   return { userId: user.id, binIds: made }
 })
 

@@ -58,6 +58,10 @@ describe('bins', () => {
     const nested = await coordinator.post('/bins', { roomId: room.id, itemId: item.id, overflowOf: more.id })
     expect(pointer(nested)).toEqual([422, '/overflowOf'])
     expect((await coordinator.patch(`/bins/${main.id}`, { retired: true })).body.code).toBe('in-use')
+    const other = await makeItem(app)
+    expect((await coordinator.patch(`/bins/${main.id}`, { itemId: other.id })).body.code).toBe('in-use')
+    const upside = { roomId: room.id, itemId: item.id, enteredReorderPoint: 50, enteredPar: 10 }
+    expect(pointer(await coordinator.post('/bins', upside))).toEqual([422, '/enteredPar'])
   })
 
   it('are found by name, item code and label, and by state', async () => {

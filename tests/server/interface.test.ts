@@ -1,6 +1,7 @@
 import { sql } from 'drizzle-orm'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import supertest from 'supertest'
+import { createApp } from '#server/app.ts'
 import { grants } from '#server/db/grants.ts'
 import type { Contract, Role } from '#shared/contracts/contract.ts'
 import { problemTable } from '#shared/contracts/problems.ts'
@@ -98,6 +99,38 @@ describe('every route', () => {
       const path = contract.path.replace(/:([A-Za-z]+)/g, '{$1}')
       expect(Object.keys(body.paths[path] ?? {}), path).toContain(contract.method.toLowerCase())
     }
+  })
+})
+
+describe('over https', () => {
+  it('sets a secure cookie bound to the host, whatever stands in front', async () => {
+    const { app: secure } = createApp({
+      db: app.database.db,
+      clock: app.clock,
+      dataDir: '.tmp',
+      clientDir: null,
+      sessionSecrets: ['s'],
+      publicUrl: 'https://brimline.example',
+      trustProxy: null,
+      logLevel: 'silent',
+    })
+    const reply = await supertest(secure)
+      .post('/api/v1/session')
+      .set('X-Brimline', '1')
+      .send({ email: 'nurse@tallowmere.example', password: 'a long enough one' })
+    expect(reply.get('Set-Cookie')![0]).toMatch(
+      /^__Host-brimline=.*; Path=\/; Expires=.*; HttpOnly; Secure; SameSite=Lax$/,
+    )
+  })
+})
+
+describe('text', () => {
+  it('that is no Unicode is refused at its field', async () => {
+    const coordinator = await app.as('coordinator')
+    const reply = await coordinator.post('/wards', { code: 'W-1', name: 'half \ud800', kind: 'general' })
+    expect([reply.status, reply.body.errors[0].pointer]).toEqual([422, '/name'])
+    expect((await coordinator.post('/wards', null)).status).toBe(422)
+    expect((await coordinator.get('/bins/abc')).status).toBe(404)
   })
 })
 

@@ -51,6 +51,21 @@ describe('signing in', () => {
     expect((await attempt({ email: 'reviewer@tallowmere.example', password })).status).toBe(201)
   }, 60_000)
 
+  it('counts tries made at once, and by either name, as tries at one person', async () => {
+    minutes(20)
+    const tries = await Promise.all(
+      Array.from({ length: 24 }, (_, i) =>
+        attempt({
+          ...(i % 2 ? { staffCode: 'T-administrator' } : { email: 'administrator@tallowmere.example' }),
+          password: `guess ${i}`,
+        }),
+      ),
+    )
+    expect(tries.filter((t) => t.status === 429).length).toBeGreaterThanOrEqual(24 - 10)
+    minutes(16)
+    expect((await attempt({ staffCode: 'T-administrator', password })).status).toBe(201)
+  }, 60_000)
+
   it('makes the session id anew and forgets it at sign-out', async () => {
     const agent = supertest.agent(app.app)
     const first = await agent.post('/api/v1/session').set('X-Brimline', '1').send({ staffCode: 'T-nurse', password })

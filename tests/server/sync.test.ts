@@ -260,6 +260,91 @@ describe('POST /sync/operations', () => {
     expect((await levelOf(b.id)).onHand).toBe(50)
   })
 
+  it('never lets one odd entry take its neighbours down', async () => {
+    minutes(60)
+    const results = await send([
+      operation(app, { type: 'count', binId: bin.id, quantity: 11, localSeq: Date.now() }),
+      operation(app, { type: 'flag', binId: bin.id, reason: 'half a \ud800 character' }),
+      null as never,
+      ['nothing'] as never,
+      operation(app, { type: 'take', binId: bin.id, quantity: 1 }),
+    ])
+    const taken = results.map((r) => r.status.startsWith('accepted'))
+    expect(taken).toEqual([true, false, false, false, true])
+    expect(results.slice(1, 4).map((r) => r.code)).toEqual([
+      'invalid-operation',
+      'invalid-operation',
+      'invalid-operation',
+    ])
+    expect((await levelOf()).onHand).toBe(10)
+  })
+
+  it('keeps an order to its own place, and a correction to its target’s', async () => {
+    const coordinator = await app.as('coordinator')
+    const here = await makeBin(app, { roomId: room.id, itemId: item.id })
+    const far = await makeBin(app, { roomId: (await makeRoom(app)).id, itemId: item.id })
+    const made = await coordinator.post('/orders', {
+      supplierId: item.supplierId,
+      lines: [{ binId: far.id, packs: 1 }],
+    })
+    const order = (await coordinator.post(`/orders/${made.body.id}/send`, {})).body
+    const stray = operation(app, { type: 'receipt', binId: here.id, quantity: 10, orderLineId: order.lines[0].id })
+    expect(await send([stray])).toMatchObject([{ code: 'item-mismatch' }])
+    const counted = operation(app, { type: 'count', binId: here.id, quantity: 5 })
+    await send([counted])
+    const about = { type: 'count.correct', targetOpId: counted.opId, quantity: 6 }
+    expect(await send([operation(app, { ...about, binId: far.id })])).toMatchObject([{ code: 'invalid-operation' }])
+    expect(await send([operation(app, { ...about, binId: '999999' })])).toMatchObject([{ code: 'unknown-bin' }])
+    const both = operation(app, { type: 'count', binId: here.id, binCode: far.code, quantity: 5 })
+    expect(await send([both])).toMatchObject([{ code: 'invalid-operation' }])
+  })
+
+  it('says of an entry whose target was refused that it cannot be', async () => {
+    const bad = operation(app, { type: 'count', binCode: 'U0000000', quantity: 3 })
+    await send([bad])
+    const about = operation(app, { type: 'count.withdraw', binId: bin.id, targetOpId: bad.opId })
+    expect(await send([about])).toMatchObject([{ status: 'rejected', code: 'target-refused' }])
+    const self = operation(app, { type: 'count.withdraw', binId: bin.id })
+    expect(await send([{ ...self, targetOpId: self.opId }])).toMatchObject([{ code: 'invalid-operation' }])
+  })
+
+  it('gives back only what is held', async () => {
+    const place = await makeBin(app, { roomId: room.id, itemId: item.id })
+    const coordinator = await app.as('coordinator')
+    const act = async (type: string, quantity: number) =>
+      send(
+        [operation(app, { type, binId: place.id, quantity, ...(type === 'count' ? {} : { reason: 'wet' }) })],
+        coordinator,
+        'desk',
+      )
+    await act('count', 30)
+    await act('hold', 5)
+    expect(await act('release', 9)).toMatchObject([{ code: 'invalid-operation' }])
+    expect(await levelOf(place.id)).toMatchObject({ onHand: 25, held: 5, states: expect.arrayContaining(['held']) })
+    await act('release', 5)
+    expect(await levelOf(place.id)).toMatchObject({ onHand: 30, held: 0 })
+  })
+
+  it('takes stock off the shelf that went to a room without a place for it, and says so', async () => {
+    const empty = await makeRoom(app)
+    minutes(60)
+    await send([operation(app, { type: 'count', binId: bin.id, quantity: 20 })])
+    const before = await rows(quarantine)
+    await send([operation(app, { type: 'transfer', binId: bin.id, direction: 'out', toRoomId: empty.id, quantity: 4 })])
+    expect((await levelOf()).onHand).toBe(16)
+    expect(await rows(quarantine)).toBe(before + 1)
+  })
+
+  it('flags two counts that differ whichever arrives first', async () => {
+    const place = await makeBin(app, { roomId: room.id, itemId: item.id })
+    const coordinator = await app.as('coordinator')
+    const early = operation(app, { type: 'count', binId: place.id, quantity: 40 })
+    minutes(30)
+    await send([operation(app, { type: 'count', binId: place.id, quantity: 12 })], coordinator, 'desk')
+    minutes(30)
+    expect(await send([early])).toMatchObject([{ flags: ['count-differs'] }])
+  })
+
   it('keeps ward staff inside their rooms', async () => {
     const admin = await app.as('administrator')
     const other = await makeRoom(app)
