@@ -267,7 +267,7 @@ describe('POST /sync/operations', () => {
       operation(app, { type: 'flag', binId: bin.id, reason: 'half a \ud800 character' }),
       null as never,
       ['nothing'] as never,
-      operation(app, { type: 'take', binId: bin.id, quantity: 1 }),
+      operation(app, { type: 'take', binId: bin.id, quantity: 1, localSeq: Date.now() + 1 }),
     ])
     const taken = results.map((r) => r.status.startsWith('accepted'))
     expect(taken).toEqual([true, false, false, false, true])
