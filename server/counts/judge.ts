@@ -1,4 +1,5 @@
 import { Operation, type OperationType } from '#shared/contracts/counts.ts'
+import { wordIssue } from '#shared/contracts/wording.ts'
 import { foldShelfCode } from '#shared/barcode/shelf-code.ts'
 import { effectiveTime } from '#shared/ledger/effective-time.ts'
 import type { Reader } from '../db/client.ts'
@@ -57,7 +58,7 @@ export function readOperation(item: Record<string, unknown>): Operation {
   if (parsed.success) return parsed.data
   const issue = parsed.error.issues[0]
   const where = issue?.path.join('.') || 'entry'
-  throw new Refusal('invalid-operation', `${where}: ${issue?.message ?? 'cannot be read'}`.slice(0, 300), true)
+  throw new Refusal('invalid-operation', `${where}: ${issue ? wordIssue(issue) : 'cannot be read'}`.slice(0, 300), true)
 }
 
 /** Decides whether and where an entry counts. @throws {Refusal | NotYet} */

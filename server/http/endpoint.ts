@@ -2,6 +2,7 @@ import express, { type NextFunction, type Request, type Response, type Router } 
 import { z } from 'zod'
 import type { Contract } from '#shared/contracts/contract.ts'
 import { fieldProblem, problem } from '#shared/contracts/problems.ts'
+import { wordIssue } from '#shared/contracts/wording.ts'
 import type { FieldError } from '#shared/kernel/problem.ts'
 import type { Clock } from '../clock.ts'
 import type { Db, Tx } from '../db/client.ts'
@@ -40,7 +41,7 @@ export function fieldErrors(error: z.ZodError, root = ''): FieldError[] {
         detail: 'this field is not known here',
       }))
     }
-    return [{ pointer: at, detail: issue.message }]
+    return [{ pointer: at, detail: wordIssue(issue) }]
   })
 }
 

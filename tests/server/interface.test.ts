@@ -134,6 +134,37 @@ describe('text', () => {
   })
 })
 
+describe('refusals', () => {
+  it('say in plain words what to do', async () => {
+    const coordinator = await app.as('coordinator')
+    const details = async (body: object): Promise<Record<string, string>> => {
+      const { errors } = (await coordinator.post('/suppliers', body)).body as {
+        errors: { pointer: string; detail: string }[]
+      }
+      return Object.fromEntries(errors.map((e) => [e.pointer, e.detail]))
+    }
+    expect(
+      await details({
+        code: 'S',
+        name: 7,
+        kind: 'friend',
+        orderDays: '12',
+        cutOff: '9',
+        leadWorkingDays: 500,
+        minimumOrder: -1,
+      }),
+    ).toEqual({
+      '/name': 'give text',
+      '/email': 'this is needed',
+      '/kind': 'choose one of: stores, outside',
+      '/cutOff': 'a time such as 10:00',
+      '/arrivalDays': 'this is needed',
+      '/leadWorkingDays': 'at most 120',
+      '/minimumOrder': 'at least 0',
+    })
+  })
+})
+
 describe('lists', () => {
   it('page from 1, 50 a page, at most 500', async () => {
     const nurse = await app.as('nurse')
