@@ -155,7 +155,7 @@ describe('refusals', () => {
       }),
     ).toEqual({
       '/name': 'give text',
-      '/email': 'this is needed',
+      '/email': 'not an e-mail address',
       '/kind': 'choose one of: stores, outside',
       '/cutOff': 'a time such as 10:00',
       '/arrivalDays': 'this is needed',
