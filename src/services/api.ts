@@ -24,10 +24,12 @@ interface Listener {
   reply?: () => void
   /** The server says that nobody is signed in. */
   signedOut?: () => void
+  /** No answer came at all. */
+  unreached?: () => void
 }
 const listeners = new Set<Listener>()
 
-/** Tells the caller of every believed reply, and of every `not-signed-in`. Returns the way to stop. */
+/** Tells the caller of every believed reply, of every `not-signed-in`, and of every call that reached nobody. Returns the way to stop. */
 export function onContact(listener: Listener): () => void {
   listeners.add(listener)
   return () => listeners.delete(listener)
@@ -61,6 +63,7 @@ async function send(url: string, init: RequestInit, signal: AbortSignal | undefi
     return await fetch(url, { ...init, signal: signal ? AbortSignal.any([signal, limit]) : limit })
   } catch (cause) {
     if (signal?.aborted) throw cause
+    for (const listener of listeners) listener.unreached?.()
     throw new Offline(limit.aborted ? 'timeout' : 'network', cause)
   }
 }

@@ -99,6 +99,7 @@ export const replenishmentWords = {
   noDraftWhat: 'Choose a row to see why, then add it. A draft is kept until you send or cancel it.',
   add: (n: number, unit: string): string => `Add ${counted(n, unit)}`,
   added: (number: string): string => `in ${number}`,
+  goesTo: (supplier: string): string => `It goes into a draft for ${supplier}.`,
   takeOut: 'Take out',
   howMany: (item: string): string => `Packs of ${item}`,
   sum: (lines: number, packs: number): string => `${counted(lines, 'item')}, ${counted(packs, 'pack')}`,
