@@ -1,4 +1,5 @@
 import * as c from '#shared/contracts/catalogue.ts'
+import * as h from '#shared/contracts/hospital.ts'
 import { listBins, momentOf, viewBin } from '../counts/bin-view.service.ts'
 import type { Routes } from '../http/endpoint.ts'
 import * as bins from './bins.service.ts'
@@ -7,8 +8,8 @@ import * as items from './items.service.ts'
 import * as places from './places.service.ts'
 
 export function catalogueRoutes(routes: Routes): void {
-  routes.read(c.readHospital, ({ tx }) => hospital.readHospital(tx))
-  routes.write(c.updateHospital, ({ tx, clock, actor, body }) => hospital.updateHospital(tx, clock, actor, body))
+  routes.read(h.readHospital, ({ tx }) => hospital.readHospital(tx))
+  routes.write(h.updateHospital, ({ tx, clock, actor, body }) => hospital.updateHospital(tx, clock, actor, body))
 
   routes.read(c.listWards, ({ tx, query }) => places.listWards(tx, query))
   routes.write(c.createWard, ({ tx, clock, actor, body }) => places.createWard(tx, clock, actor.id, body))

@@ -1,5 +1,5 @@
 import { IANAZone } from 'luxon'
-import type { Hospital } from '#shared/contracts/catalogue.ts'
+import type { Hospital } from '#shared/contracts/hospital.ts'
 import { fieldProblem, problem } from '#shared/contracts/problems.ts'
 import { audit } from '../audit/audit.service.ts'
 import type { Clock } from '../clock.ts'

@@ -1,5 +1,5 @@
 import { randomBytes } from 'node:crypto'
-import type { Hospital } from '#shared/contracts/catalogue.ts'
+import type { Hospital } from '#shared/contracts/hospital.ts'
 import { createHospital } from '../catalogue/hospital.service.ts'
 import type { Clock } from '../clock.ts'
 import type { Db } from '../db/client.ts'

@@ -22,60 +22,6 @@ export type RoomMode = z.infer<typeof RoomMode>
 export const Ved = z.enum(['V', 'E', 'D'])
 export type Ved = z.infer<typeof Ved>
 
-// Hospital --------------------------------------------------------------------------------------------------------
-export const Hospital = z.object({
-  name: z.string(),
-  timeZone: z.string(),
-  /** The hospital's own noun for a bin. */
-  binWord: z.enum(['bin', 'place', 'shelf place']),
-  currency: z.string(),
-  levels: z.object({ V: z.number(), E: z.number(), D: z.number() }),
-  floor: z.number(),
-  ceiling: z.number(),
-  /** A second person confirms a service level. */
-  twoPersons: z.boolean(),
-  vitalPolicyText: z.string(),
-  vitalPolicyLink: z.string(),
-  resupplyPhone: z.string(),
-  orderingCost: z.number(),
-  holdingRatePerYear: z.number(),
-  demo: z.boolean(),
-})
-export type Hospital = z.infer<typeof Hospital>
-const level = z.number().min(0.5).max(0.9999)
-
-export const readHospital = contract({
-  method: 'GET',
-  path: '/hospital',
-  summary: 'Hospital settings',
-  allow: 'signed-in',
-  answer: Hospital,
-})
-export const updateHospital = contract({
-  method: 'PATCH',
-  path: '/hospital',
-  summary: 'Change hospital settings',
-  allow: ['administrator'],
-  body: z
-    .strictObject({
-      name: text(120),
-      timeZone: text(60),
-      binWord: Hospital.shape.binWord,
-      currency: z.string().regex(/^[A-Z]{3}$/, 'three capital letters, as GBP'),
-      levels: z.strictObject({ V: level, E: level, D: level }),
-      floor: level,
-      ceiling: level,
-      twoPersons: z.boolean(),
-      vitalPolicyText: z.string().trim().max(600),
-      vitalPolicyLink: z.string().trim().max(300),
-      resupplyPhone: z.string().trim().max(60),
-      orderingCost: z.number().min(0).max(10_000),
-      holdingRatePerYear: z.number().min(0).max(2),
-    })
-    .partial(),
-  answer: Hospital,
-})
-
 // Wards and rooms -------------------------------------------------------------------------------------------------
 const wardFields = { code, name: text(120), kind: WardKind, site: z.string().trim().max(120) }
 export const Ward = z.object({

@@ -8,7 +8,7 @@ import type { RegisteredRoute } from '#server/http/endpoint.ts'
 import { jobHandlers } from '#server/jobs/handlers.ts'
 import { drainJobs } from '#server/jobs/jobs.service.ts'
 import { createUser } from '#server/people/people.service.ts'
-import type { Hospital } from '#shared/contracts/catalogue.ts'
+import type { Hospital } from '#shared/contracts/hospital.ts'
 import type { Role } from '#shared/contracts/contract.ts'
 import { createTestDatabase, type TestDatabase } from './database.ts'
 

@@ -1,4 +1,5 @@
-import type { Hospital, Room, Supplier, Ward } from '#shared/contracts/catalogue.ts'
+import type { Room, Supplier, Ward } from '#shared/contracts/catalogue.ts'
+import type { Hospital } from '#shared/contracts/hospital.ts'
 
 /** The invented hospital. Levels are starting values, a facility's own choice, not advice. */
 export const hospital: Hospital = {

@@ -1,5 +1,6 @@
 import type { Bin } from '#shared/contracts/bins.ts'
-import type { Hospital, Room } from '#shared/contracts/catalogue.ts'
+import type { Room } from '#shared/contracts/catalogue.ts'
+import type { Hospital } from '#shared/contracts/hospital.ts'
 import type { Role } from '#shared/contracts/contract.ts'
 import { binFigures } from '#src/components/gauge/bin-figures.ts'
 import { gaugeShape } from '#src/components/gauge/gauge-geometry.ts'

@@ -1,5 +1,6 @@
 import type { Role } from '#shared/contracts/contract.ts'
-import type { Hospital, Room, Ward } from '#shared/contracts/catalogue.ts'
+import type { Room, Ward } from '#shared/contracts/catalogue.ts'
+import type { Hospital } from '#shared/contracts/hospital.ts'
 
 export const commonWords = {
   product: 'Brimline',

@@ -1,4 +1,4 @@
-import type { Hospital } from '#shared/contracts/catalogue.ts'
+import type { Hospital } from '#shared/contracts/hospital.ts'
 import { binWord } from './common.ts'
 import { quantity } from './format.ts'
 

@@ -1,4 +1,4 @@
-import type { Hospital } from '#shared/contracts/catalogue.ts'
+import type { Hospital } from '#shared/contracts/hospital.ts'
 import { fieldWords as w, oddsIn } from '#src/i18n/en.ts'
 import type { FormValues, RecordField } from './record-field.ts'
 
