@@ -149,6 +149,7 @@ describe('places and suppliers', () => {
       '/countEveryDays',
     ])
     expect((await coordinator.patch(`/rooms/${room.id}`, { retired: true })).body.code).toBe('in-use')
+    expect((await coordinator.patch(`/wards/${room.wardId}`, { retired: true })).body.code).toBe('in-use')
     const supplier = await makeSupplier(app)
     expect(pointer(await coordinator.patch(`/suppliers/${supplier.id}`, { orderDays: '118' }))).toEqual([
       422,
