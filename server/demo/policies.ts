@@ -6,7 +6,7 @@ import { dropPolicyJobs } from './demo.repository.ts'
 
 const dayMs = 86_400_000
 /** Vital places are also worked out as of these many days ago, so that their points have a past. */
-const lookBackDays = [60, 20, 5]
+const lookBackDays = [60, 24, 16, 8]
 
 /** Works out every place's policy from the history, as the night's run does; single looks that waited are not needed. */
 export async function computeDemoPolicies(db: Db, clock: Clock, say: (line: string) => void): Promise<void> {

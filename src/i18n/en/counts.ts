@@ -9,7 +9,7 @@ const places = (n: number): string => counted(n, 'place')
 /** "count boxes; 1 box = 25 each". */
 function howToCount(item: SnapshotItem): string {
   const what = `count ${plural(item.countUnit)}`
-  const pack = item.packSize > 1 ? `; 1 ${item.orderUnit} = ${quantity(item.packSize)} ${item.unitOfUse}` : ''
+  const pack = item.packSize > 1 ? `; 1 ${item.orderUnit} = ${counted(item.packSize, item.unitOfUse)}` : ''
   return what + pack
 }
 
