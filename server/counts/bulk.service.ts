@@ -15,7 +15,8 @@ import {
   seenDevice,
   type NewMovement,
 } from './counts.repository.ts'
-import { movementRows, refold, toLedgerRow, touchBins } from './counts.service.ts'
+import { movementRows } from './counts.service.ts'
+import { refold, toLedgerRow, touchBins } from './levels.service.ts'
 import type { End } from './judge.ts'
 
 /** One entry as it was received and judged, for those who bring in many at once. */

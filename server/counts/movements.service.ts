@@ -4,7 +4,7 @@ import type { Reader } from '../db/client.ts'
 import type { Actor } from '../http/context.ts'
 import { peopleNames } from '../people/people.service.ts'
 import { groupBy, pageOf } from './bin-view.service.ts'
-import { foldedLedger } from './counts.service.ts'
+import { foldedLedger } from './levels.service.ts'
 
 /** A coordinator sees names this long; afterwards, and for everybody else, the role alone. */
 const nameDays = 14

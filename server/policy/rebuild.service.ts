@@ -3,7 +3,7 @@ import { reorderPoint } from '#shared/policy/reorder-point.ts'
 import { readHospital } from '../catalogue/hospital.service.ts'
 import type { Clock } from '../clock.ts'
 import { momentOf, viewBins, type BinView } from '../counts/bin-view.service.ts'
-import { levelDifference } from '../counts/counts.service.ts'
+import { levelDifference } from '../counts/levels.service.ts'
 import type { Db } from '../db/client.ts'
 import { allCurrent, intervalKey, intervalRows, learnFrom, storedIntervals } from './policy.service.ts'
 
