@@ -264,4 +264,3 @@ export async function updateSupplier(
 
 /** One supplier as stored, for those who compute calendars or send orders. */
 export const supplierRow = repo.findSupplier
-export const roomRow = repo.findRoom

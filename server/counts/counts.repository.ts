@@ -181,10 +181,6 @@ export async function updateLevel(tx: Tx, binId: number, set: Partial<LevelRow>)
   await tx.update(binLevels).set(set).where(eq(binLevels.binId, binId))
 }
 
-export async function listLevels(db: Reader): Promise<LevelRow[]> {
-  return db.select().from(binLevels).orderBy(asc(binLevels.binId))
-}
-
 // Room versions ---------------------------------------------------------------------------------------------------
 export async function ensureRoomVersion(tx: Tx, roomId: number): Promise<void> {
   await tx

@@ -1,10 +1,12 @@
 import type { Movement } from '#shared/contracts/bins.ts'
+import { fold } from '#shared/ledger/fold.ts'
 import type { Clock } from '../clock.ts'
 import type { Reader } from '../db/client.ts'
 import type { Actor } from '../http/context.ts'
 import { peopleNames } from '../people/people.service.ts'
 import { groupBy, pageOf } from './bin-view.service.ts'
-import { foldedLedger } from './levels.service.ts'
+import { listLedger } from './counts.repository.ts'
+import { toLedgerRow } from './levels.service.ts'
 
 /** A coordinator sees names this long; afterwards, and for everybody else, the role alone. */
 const nameDays = 14
@@ -17,12 +19,11 @@ export async function listMovements(
   binId: number,
   query: { page: number; pageSize: number },
 ) {
-  const { rows } = await foldedLedger(db, binId, null)
+  const rows = await listLedger(db, binId)
   const byAssignment = groupBy(rows, (r) => r.assignmentId)
   const after = new Map<string, { onHandAfter: number; voidedBy: string | null }>()
-  for (const assignmentId of byAssignment.keys()) {
-    const { folded } = await foldedLedger(db, binId, assignmentId)
-    for (const f of folded.rows)
+  for (const own of byAssignment.values()) {
+    for (const f of fold(own.map(toLedgerRow)).rows)
       after.set(`${f.row.opId}/${f.row.part}`, { onHandAfter: f.onHandAfter, voidedBy: f.voidedBy })
   }
   const newestFirst = [...rows].sort((a, b) => b.effectiveAt.getTime() - a.effectiveAt.getTime() || b.id - a.id)

@@ -91,10 +91,6 @@ export async function existingRooms(db: Reader, ids: number[]): Promise<Set<numb
   return new Set(rows.map((r) => r.id))
 }
 
-export async function listActiveByRole(db: Reader, role: Role): Promise<Person[]> {
-  return withRooms(db, await base(db).where(and(eq(users.role, role), isNull(users.retiredAt))))
-}
-
 export interface NewPerson {
   name: string
   email: string
@@ -210,9 +206,4 @@ export async function lockReset(tx: Tx, tokenHash: string) {
 
 export async function markResetUsed(tx: Tx, id: number, at: Date): Promise<void> {
   await tx.update(passwordResets).set({ usedAt: at }).where(eq(passwordResets.id, id))
-}
-
-export async function countPeople(db: Reader): Promise<number> {
-  const [row] = await db.select({ n: count() }).from(users)
-  return row?.n ?? 0
 }

@@ -10,7 +10,6 @@ import type { Actor } from '../http/context.ts'
 import { queueMail } from '../mail/mail.service.ts'
 import { hashPassword, passwordObjection, verifyPassword } from './passwords.ts'
 import {
-  countPeople,
   deleteExpired,
   deleteSessionsOf,
   existingRooms,
@@ -18,7 +17,6 @@ import {
   findPersonBySignIn,
   insertPerson,
   insertReset,
-  listActiveByRole,
   listPeople,
   lockReset,
   markResetUsed,
@@ -262,8 +260,6 @@ export async function updateUser(
 
 /** Names and roles by id. */
 export const peopleNames = namesOf
-export const peopleByRole = listActiveByRole
-export const anyPeople = async (db: Reader): Promise<boolean> => (await countPeople(db)) > 0
 
 /** Sweeps sessions and failures that no longer matter. */
 export const sweepPeople = (db: Reader, clock: Clock): Promise<void> =>

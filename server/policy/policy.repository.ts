@@ -19,6 +19,14 @@ export async function listCurrent(db: Reader): Promise<PolicyRow[]> {
   return db.select().from(policies).where(eq(policies.isCurrent, true)).orderBy(asc(policies.binId))
 }
 
+/** Results alone: the inputs they were made from are many times larger. */
+export async function listResults(db: Reader) {
+  return db
+    .select({ binId: policies.binId, result: policies.result })
+    .from(policies)
+    .where(eq(policies.isCurrent, true))
+}
+
 export async function insertPolicy(tx: Tx, row: typeof policies.$inferInsert): Promise<void> {
   await tx
     .update(policies)

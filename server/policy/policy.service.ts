@@ -274,7 +274,7 @@ export const newestRun = repo.newestRun
 
 /** Estimated demand of every bin that has a calculation. */
 export async function demandOf(db: Reader): Promise<Map<number, { meanPerDay: number; dispersion: number }>> {
-  const rows = await repo.listCurrent(db)
+  const rows = await repo.listResults(db)
   return new Map(
     rows.flatMap((row) => {
       const demand = (row.result as PolicyResult | null)?.demand
@@ -285,7 +285,7 @@ export async function demandOf(db: Reader): Promise<Map<number, { meanPerDay: nu
 
 /** Warnings of each bin's calculation. */
 export async function warningsOf(db: Reader): Promise<Map<number, string[]>> {
-  const rows = await repo.listCurrent(db)
+  const rows = await repo.listResults(db)
   return new Map(rows.map((row) => [row.binId, (row.result as PolicyResult | null)?.warnings ?? []]))
 }
 

@@ -23,7 +23,6 @@ export const rungs = [
   { turn: -45, scale: 1, hard: false },
   { turn: 0, scale: 0.5, hard: false },
 ] as const
-export type Rung = (typeof rungs)[number]
 
 /** A code as the engine gave it: `]C1` and separators kept for element strings. */
 export interface Decoded {

@@ -16,15 +16,7 @@ export interface AimStep {
   now: boolean
 }
 
-const USUAL = [0.9, 0.95, 0.975, 0.98, 0.99, 0.995, 0.998, 0.999]
-
 const same = (a: number, b: number): boolean => Math.abs(a - b) < 1e-9
-
-/** The steps offered: the usual ones inside the hospital's floor and ceiling, and the present aim. */
-export function aimLevels(floor: number, ceiling: number, present: number, more: number[] = []): number[] {
-  const inside = [...USUAL, present, ...more].filter((level) => level >= floor - 1e-9 && level <= ceiling + 1e-9)
-  return inside.sort((a, b) => a - b).filter((level, i, all) => i === 0 || !same(level, all[i - 1] as number))
-}
 
 /**
  * Works every step out with the policy's own input; nothing is sent anywhere.

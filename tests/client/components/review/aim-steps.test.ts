@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest'
 import { reorderPoint } from '#shared/policy/reorder-point.ts'
-import { aimLevels, aimSteps, cyclesPerYear } from '#src/components/review/aim-steps.ts'
+import { levelSteps } from '#shared/policy/service-level-steps.ts'
+import { aimSteps, cyclesPerYear } from '#src/components/review/aim-steps.ts'
 import { reviewDays } from '#src/components/review/review-days.ts'
 
 const input = {
@@ -14,8 +15,8 @@ const input = {
 
 describe('aims', () => {
   it('offers the usual steps inside floor and ceiling, with the present aim among them', () => {
-    expect(aimLevels(0.95, 0.995, 0.985)).toEqual([0.95, 0.975, 0.98, 0.985, 0.99, 0.995])
-    expect(aimLevels(0.9, 0.999, 0.98).filter((level) => level === 0.98)).toHaveLength(1)
+    expect(levelSteps(0.95, 0.995, 0.985)).toEqual([0.95, 0.975, 0.98, 0.985, 0.99, 0.995])
+    expect(levelSteps(0.9, 0.999, 0.98).filter((level) => level === 0.98)).toHaveLength(1)
   })
 
   it('works each step out exactly as the policy would, with the difference to now', () => {
