@@ -1,4 +1,4 @@
-import { boolean, double, index, int, mysqlTable, primaryKey, tinyint, unique, varchar } from 'drizzle-orm/mysql-core'
+import { boolean, date, double, index, int, mysqlTable, primaryKey, tinyint, unique, varchar } from 'drizzle-orm/mysql-core'
 import { id, instant, ref } from '../db/columns.ts'
 import type { RoomMode, Ved } from '#shared/contracts/catalogue.ts'
 
@@ -17,9 +17,32 @@ export const hospitals = mysqlTable('hospitals', {
   resupplyPhone: varchar({ length: 60 }).notNull(),
   orderingCost: double().notNull(),
   holdingRatePerYear: double().notNull(),
+  /** Closed days wherever no other calendar is named. */
+  calendarId: ref(),
+  /** Places with few counts learn from like wards. */
+  isPooling: boolean().notNull().default(true),
   isDemo: boolean().notNull(),
   createdAt: instant().notNull(),
 })
+
+/** Named lists of closed days: of a supplier, the stores, a ward. */
+export const calendars = mysqlTable('calendars', {
+  id: id(),
+  name: varchar({ length: 120 }).notNull().unique(),
+  retiredAt: instant(),
+})
+
+export const calendarDays = mysqlTable(
+  'calendar_days',
+  {
+    calendarId: ref()
+      .notNull()
+      .references(() => calendars.id),
+    date: date({ mode: 'string' }).notNull(),
+    name: varchar({ length: 120 }).notNull(),
+  },
+  (t) => [primaryKey({ columns: [t.calendarId, t.date] })],
+)
 
 export const wards = mysqlTable('wards', {
   id: id(),
@@ -29,6 +52,7 @@ export const wards = mysqlTable('wards', {
     .$type<'general' | 'intensive' | 'theatre' | 'emergency' | 'children' | 'maternity' | 'outpatient' | 'stores'>()
     .notNull(),
   site: varchar({ length: 120 }).notNull(),
+  calendarId: ref(),
   retiredAt: instant(),
 })
 
@@ -40,6 +64,8 @@ export const rooms = mysqlTable('rooms', {
     .notNull()
     .references(() => wards.id),
   countEveryDays: double().notNull(),
+  /** Weekdays on which it is counted, as digits; empty is every day. */
+  countDays: varchar({ length: 7 }).notNull().default(''),
   mode: varchar({ length: 20 }).$type<RoomMode>().notNull(),
   retiredAt: instant(),
 })
@@ -58,6 +84,7 @@ export const suppliers = mysqlTable('suppliers', {
   minimumOrder: double().notNull(),
   leadTimeDays: double(),
   leadTimeSd: double(),
+  calendarId: ref(),
   retiredAt: instant(),
 })
 

@@ -1,4 +1,4 @@
-import { boolean, double, index, int, mysqlTable, varchar } from 'drizzle-orm/mysql-core'
+import { boolean, date, double, index, int, mysqlTable, primaryKey, varchar } from 'drizzle-orm/mysql-core'
 import { id, instant, jsonOf, ref } from '../db/columns.ts'
 
 /** Projection of the ledger: one row per pair of neighbouring counts inside one assignment. */
@@ -39,6 +39,10 @@ export const policies = mysqlTable(
     result: jsonOf<unknown>(),
     protection: jsonOf<unknown>(),
     pending: jsonOf<unknown>(),
+    /** What was learnt besides: how counts keep their rhythm, what is asked, who helps; looked at anew each time. */
+    facts: jsonOf<unknown>(),
+    /** The row whose calculation made the figure in force; null where a person entered it. */
+    basisId: ref(),
     reorderPoint: int(),
     parLevel: int(),
     orderQuantity: int(),
@@ -66,6 +70,8 @@ export const leadTimeObservations = mysqlTable(
     orderedAt: instant().notNull(),
     arrivedAt: instant().notNull(),
     days: double().notNull(),
+    /** Days beyond the moment the supplier's calendar stated for it; below 0 when it came early. */
+    delayDays: double().notNull().default(0),
   },
   (t) => [index('lead_time_observations_supplier').on(t.supplierId, t.arrivedAt)],
 )
@@ -77,6 +83,98 @@ export const policyRuns = mysqlTable('policy_runs', {
   cause: varchar({ length: 20 }).notNull(),
   bins: int().notNull(),
   done: int().notNull(),
+  /** Every place up to this one is done: where a run cut short goes on. */
   lastBinId: ref(),
   changed: int().notNull(),
+})
+
+/** Stretches of a place's time that are left out, starts of a history, and answers to what was asked. */
+export const exclusions = mysqlTable(
+  'exclusions',
+  {
+    id: id(),
+    binId: ref().notNull(),
+    assignmentId: ref().notNull(),
+    kind: varchar({ length: 20 }).$type<'excluded' | 'history-start' | 'real'>().notNull(),
+    fromAt: instant().notNull(),
+    toAt: instant(),
+    reason: varchar({ length: 300 }).notNull(),
+    createdBy: ref().notNull(),
+    createdAt: instant().notNull(),
+    endedAt: instant(),
+    endedBy: ref(),
+  },
+  (t) => [index('exclusions_bin').on(t.binId, t.endedAt)],
+)
+
+/** A change of use that people know of: beds opened, a theatre list, a ward shut. */
+export const plannedChanges = mysqlTable(
+  'planned_changes',
+  {
+    id: id(),
+    name: varchar({ length: 120 }).notNull(),
+    wardId: ref(),
+    roomId: ref(),
+    /** Items it is about; none is every item there. */
+    itemIds: jsonOf<number[]>().notNull(),
+    kind: varchar({ length: 10 }).$type<'factor' | 'cases' | 'closed'>().notNull(),
+    factor: double(),
+    unitsPerCase: double(),
+    casesPerDay: double(),
+    weekdays: varchar({ length: 7 }).notNull(),
+    startsOn: date({ mode: 'string' }).notNull(),
+    endsOn: date({ mode: 'string' }),
+    reason: varchar({ length: 300 }).notNull(),
+    createdBy: ref().notNull(),
+    createdAt: instant().notNull(),
+    /** Taken back: counts for nothing since then. */
+    endedAt: instant(),
+    endedBy: ref(),
+    /** What the counts said of it at the last night's run. */
+    seenFactor: double(),
+    seenIntervals: int().notNull().default(0),
+    usedFactor: double(),
+  },
+  (t) => [index('planned_changes_time').on(t.endedAt, t.startsOn)],
+)
+
+/** What like wards teach about an item; frozen once a night, so that no result depends on the order of the run. */
+export const pools = mysqlTable(
+  'pools',
+  {
+    itemId: ref().notNull(),
+    wardKind: varchar({ length: 20 }).notNull(),
+    nu0: double().notNull(),
+    w0: double().notNull(),
+    rateA: double(),
+    rateB: double(),
+    basis: varchar({ length: 10 }).$type<'item' | 'category'>().notNull(),
+    members: jsonOf<unknown>().notNull(),
+    madeAt: instant().notNull(),
+  },
+  (t) => [primaryKey({ columns: [t.itemId, t.wardKind] })],
+)
+
+/** A ward a person left out of what helps an item. */
+export const poolExclusions = mysqlTable(
+  'pool_exclusions',
+  {
+    id: id(),
+    itemId: ref().notNull(),
+    wardId: ref().notNull(),
+    reason: varchar({ length: 300 }).notNull(),
+    createdBy: ref().notNull(),
+    createdAt: instant().notNull(),
+    endedAt: instant(),
+    endedBy: ref(),
+  },
+  (t) => [index('pool_exclusions_item').on(t.itemId, t.endedAt)],
+)
+
+/** How use spreads over the week in a ward; frozen at night and replaced only when it moved. */
+export const weekdayProfiles = mysqlTable('weekday_profiles', {
+  wardId: ref().primaryKey(),
+  weights: jsonOf<number[]>().notNull(),
+  intervals: int().notNull(),
+  madeAt: instant().notNull(),
 })

@@ -56,6 +56,10 @@ export const Bin = z.object({
   countEveryDays: z.number(),
   /** When the next believed delivery of this item for this bin should come. */
   expectedOn: z.string().nullable(),
+  /** The place is shut for a planned time: no counts are due and nothing is flagged until then. */
+  closed: z.object({ from: Instant, until: Instant.nullable() }).nullable(),
+  /** A holiday gap is near: what should stand here by the last order before it (an estimate). */
+  gap: z.object({ level: z.number().int(), orderBy: Instant, name: z.string() }).nullable(),
   /** The ledger folds below zero: records disagree, count it. */
   recordsDisagree: z.boolean(),
   enteredReorderPoint: z.number().int().nullable(),

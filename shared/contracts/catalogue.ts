@@ -23,13 +23,21 @@ export const Ved = z.enum(['V', 'E', 'D'])
 export type Ved = z.infer<typeof Ved>
 
 // Wards and rooms -------------------------------------------------------------------------------------------------
-const wardFields = { code, name: text(120), kind: WardKind, site: z.string().trim().max(120) }
+const wardFields = {
+  code,
+  name: text(120),
+  kind: WardKind,
+  site: z.string().trim().max(120),
+  /** Days on which it takes no deliveries and counts nothing; null is the hospital's. */
+  calendarId: Id.nullable(),
+}
 export const Ward = z.object({
   id: Id,
   code: z.string(),
   name: z.string(),
   kind: WardKind,
   site: z.string(),
+  calendarId: Id.nullable(),
   retired: z.boolean(),
 })
 export type Ward = z.infer<typeof Ward>
@@ -46,7 +54,11 @@ export const createWard = contract({
   path: '/wards',
   summary: 'Add a ward',
   allow: editors,
-  body: z.strictObject({ ...wardFields, site: wardFields.site.default('') }),
+  body: z.strictObject({
+    ...wardFields,
+    site: wardFields.site.default(''),
+    calendarId: wardFields.calendarId.default(null),
+  }),
   answer: Ward,
   status: 201,
 })
@@ -60,11 +72,18 @@ export const updateWard = contract({
   answer: Ward,
 })
 
+/** Weekdays as digits. */
+const days = z
+  .string()
+  .regex(/^(?!.*(.).*\1)[1-7]{0,7}$/, 'digits 1 (Monday) to 7, each once: 14 is Monday and Thursday')
+
 const roomFields = {
   code,
   name: text(120),
   wardId: Id,
   countEveryDays: z.number().min(0.5, 'at least half a day').max(90, 'at most 90 days'),
+  /** Weekdays on which it is counted; empty is every day. */
+  countDays: days,
   mode: RoomMode,
 }
 export const Room = z.object({
@@ -75,6 +94,7 @@ export const Room = z.object({
   wardName: z.string(),
   wardKind: WardKind,
   countEveryDays: z.number(),
+  countDays: z.string(),
   mode: RoomMode,
   bins: z.number().int(),
   below: z.number().int(),
@@ -94,7 +114,7 @@ export const createRoom = contract({
   path: '/rooms',
   summary: 'Add a room',
   allow: editors,
-  body: z.strictObject({ ...roomFields, mode: RoomMode.default('as-before') }),
+  body: z.strictObject({ ...roomFields, countDays: days.default(''), mode: RoomMode.default('as-before') }),
   answer: Room,
   status: 201,
 })
@@ -108,10 +128,50 @@ export const updateRoom = contract({
   answer: Room,
 })
 
+/** One place on the sheet that stands before a room is kept another way. */
+export const RoomLevelRow = z.object({
+  bin: Bin,
+  entered: z.number().int().nullable(),
+  calculated: z.number().int(),
+  /** Units; above 0 where more is worked out than was entered. */
+  difference: z.number().int(),
+  /** Holds once the room is kept by what is worked out; vital items wait for the reviewer. */
+  waitsForReviewer: z.boolean(),
+})
+export type RoomLevelRow = z.infer<typeof RoomLevelRow>
+export const RoomLevels = z.object({
+  room: Room,
+  /** The ten places where entered and worked out differ most, by share of the entered level. */
+  rows: z.array(RoomLevelRow),
+  /** Places with a calculation, those that would rise and those that would fall. */
+  places: z.number().int(),
+  rise: z.number().int(),
+  fall: z.number().int(),
+  /** Vital places that would wait for the reviewer. */
+  vital: z.number().int(),
+  /** Places with nothing to work out from yet: what was entered stays. */
+  entered: z.number().int(),
+})
+export type RoomLevels = z.infer<typeof RoomLevels>
+export const readRoomLevels = contract({
+  method: 'GET',
+  path: '/rooms/:id/levels',
+  summary: 'Entered and worked-out levels of a room side by side',
+  allow: ['coordinator', 'reviewer', 'administrator'],
+  params: idParams,
+  answer: RoomLevels,
+})
+export const setRoomMode = contract({
+  method: 'POST',
+  path: '/rooms/:id/mode',
+  summary: 'Say how a room is kept; vital items only by the reviewer',
+  allow: ['coordinator', 'reviewer', 'administrator'],
+  params: idParams,
+  body: z.strictObject({ mode: RoomMode, reason: z.string().trim().max(300).default('') }),
+  answer: RoomLevels,
+})
+
 // Suppliers -------------------------------------------------------------------------------------------------------
-const days = z
-  .string()
-  .regex(/^(?!.*(.).*\1)[1-7]{0,7}$/, 'digits 1 (Monday) to 7, each once: 14 is Monday and Thursday')
 const clock = z.string().regex(/^([01][0-9]|2[0-3]):[0-5][0-9]$/, 'a time such as 10:00')
 const supplierFields = {
   code,
@@ -129,6 +189,8 @@ const supplierFields = {
   minimumOrder: z.number().min(0).max(1_000_000),
   leadTimeDays: z.number().min(0).max(365).nullable(),
   leadTimeSd: z.number().min(0).max(365).nullable(),
+  /** Days on which it takes no orders and brings nothing; null is the hospital's. */
+  calendarId: Id.nullable(),
 }
 export const Supplier = z.object({
   id: Id,
@@ -144,6 +206,9 @@ export const Supplier = z.object({
   minimumOrder: z.number(),
   leadTimeDays: z.number().nullable(),
   leadTimeSd: z.number().nullable(),
+  calendarId: Id.nullable(),
+  /** Deliveries whose time was seen, and their mean delay beyond the stated time, in days. */
+  seen: z.object({ deliveries: z.number().int(), delayDays: z.number().nullable() }),
   retired: z.boolean(),
 })
 export type Supplier = z.infer<typeof Supplier>
@@ -165,6 +230,7 @@ export const createSupplier = contract({
     arrivalTime: clock.default('14:00'),
     leadTimeDays: supplierFields.leadTimeDays.default(null),
     leadTimeSd: supplierFields.leadTimeSd.default(null),
+    calendarId: supplierFields.calendarId.default(null),
   }),
   answer: Supplier,
   status: 201,

@@ -1,5 +1,5 @@
 import { z } from 'zod'
-import { contract, text } from './contract.ts'
+import { contract, Id, text } from './contract.ts'
 
 export const Hospital = z.object({
   name: z.string(),
@@ -17,6 +17,10 @@ export const Hospital = z.object({
   resupplyPhone: z.string(),
   orderingCost: z.number(),
   holdingRatePerYear: z.number(),
+  /** Closed days wherever no other calendar is named. */
+  calendarId: Id.nullable(),
+  /** Places with few counts learn from like wards. */
+  pooling: z.boolean(),
   demo: z.boolean(),
 })
 export type Hospital = z.infer<typeof Hospital>
@@ -49,6 +53,8 @@ export const updateHospital = contract({
       resupplyPhone: z.string().trim().max(60),
       orderingCost: z.number().min(0).max(10_000),
       holdingRatePerYear: z.number().min(0).max(2),
+      calendarId: Id.nullable(),
+      pooling: z.boolean(),
     })
     .partial(),
   answer: Hospital,

@@ -74,6 +74,59 @@ export const BinPolicy = z.object({
       own: z.boolean(),
     })
     .nullable(),
+  /** Planned counts of late that were kept. */
+  countsKept: z.object({ kept: z.number().int(), of: z.number().int() }).nullable(),
+  /** How use comes, after Syntetos, Boylan and Croston; null with too few counts. */
+  demandClass: z.enum(['smooth', 'erratic', 'intermittent', 'lumpy']).nullable(),
+  /** Nothing used since then, for long. */
+  useStoppedSince: Instant.nullable(),
+  /** Stretches so unlike the rest that a person is asked what they were. */
+  questions: z.array(
+    z.object({
+      closingOpId: z.string(),
+      from: Instant,
+      to: Instant,
+      quantity: z.number(),
+      expected: z.number(),
+    }),
+  ),
+  /** Stretches of time that are left out, a start of the history, and answers to questions. */
+  exclusions: z.array(
+    z.object({
+      id: Id,
+      kind: z.enum(['excluded', 'history-start', 'real']),
+      from: Instant,
+      to: Instant.nullable(),
+      reason: z.string(),
+      byName: z.string(),
+      at: Instant,
+    }),
+  ),
+  /** Like wards that help, with the share of this place's own counts; null where none do. */
+  pool: z
+    .object({
+      basis: z.enum(['item', 'category']),
+      /** Weight of the place's own counts in the rate, 0 to 1; null where only the spread is shared. */
+      ownShare: z.number().nullable(),
+      wards: z.array(
+        z.object({ wardId: Id, name: z.string(), meanPerDay: z.number(), own: z.boolean(), leftOut: z.boolean() }),
+      ),
+    })
+    .nullable(),
+  /** Planned changes that bear on it now or within one protection time. */
+  changes: z.array(
+    z.object({
+      id: Id,
+      name: z.string(),
+      kind: z.enum(['factor', 'cases', 'closed']),
+      startsOn: DateOnly,
+      endsOn: DateOnly.nullable(),
+      entered: z.number().nullable(),
+      seen: z.number().nullable(),
+    }),
+  ),
+  /** Deliveries seen beside the stated time. */
+  leadTimes: z.object({ seen: z.number().int(), statedDays: z.number() }).nullable(),
   /** How the figures in force moved, newest first. */
   history: z.array(
     z.object({
@@ -156,6 +209,77 @@ export const setPinnedFloor = contract({
   answer: BinPolicy,
 })
 
+const whoMayExclude = ['coordinator', 'reviewer', 'administrator'] as const
+export const addExclusion = contract({
+  method: 'POST',
+  path: '/bins/:id/exclusions',
+  summary: 'Leave a stretch of time out, start the history anew, or say that an unusual stretch was real',
+  allow: whoMayExclude,
+  params: idParams,
+  body: z.strictObject({
+    kind: z.enum(['excluded', 'history-start', 'real']),
+    from: Instant,
+    /** End of the stretch; a start of the history has none. */
+    to: Instant.nullable().default(null),
+    reason: text(300),
+  }),
+  answer: BinPolicy,
+  status: 201,
+})
+export const endExclusion = contract({
+  method: 'POST',
+  path: '/exclusions/:id/end',
+  summary: 'Let it count again; the record of it stays',
+  allow: whoMayExclude,
+  params: idParams,
+  body: z.strictObject({ reason: text(300) }),
+  answer: BinPolicy,
+})
+export const setPoolWard = contract({
+  method: 'POST',
+  path: '/bins/:id/like-wards',
+  summary: 'Leave a like ward out of what helps this item, or take it in again',
+  allow: ['coordinator', 'reviewer'],
+  params: idParams,
+  body: z.strictObject({ wardId: Id, leftOut: z.boolean(), reason: text(300) }),
+  answer: BinPolicy,
+})
+
+/** The night's run over every place. */
+export const PolicyRun = z.object({
+  startedAt: Instant,
+  finishedAt: Instant.nullable(),
+  bins: z.number().int(),
+  done: z.number().int(),
+  changed: z.number().int(),
+})
+export const readPolicyRun = contract({
+  method: 'GET',
+  path: '/policy/run',
+  summary: 'How far the newest run over every place has come; null before the first',
+  allow: ['coordinator', 'reviewer', 'administrator'],
+  answer: z.object({ run: PolicyRun.nullable() }),
+})
+
+/** What the aims of one class come to. */
+export const ClassOutlook = z.object({
+  ved: z.enum(['V', 'E', 'D']),
+  target: z.number(),
+  places: z.number().int(),
+  /** Places whose figures are worked out, on which the rest rests. */
+  workedOut: z.number().int(),
+  /** Estimated run-outs a year over these places. */
+  runOutsPerYear: z.number(),
+})
+export type ClassOutlook = z.infer<typeof ClassOutlook>
+export const readClassOutlook = contract({
+  method: 'GET',
+  path: '/review/classes',
+  summary: 'What the aims of each class come to in a year (an estimate)',
+  allow: ['reviewer', 'coordinator', 'administrator'],
+  answer: z.object({ items: z.array(ClassOutlook) }),
+})
+
 export const ReviewRow = Bin.extend({
   target: z.number(),
   source: z.enum(['bin-override', 'item-override', 'class', 'hospital']),
@@ -167,6 +291,8 @@ export const ReviewRow = Bin.extend({
   runOuts: z.object({ found: z.number().int(), cycles: z.number().int() }),
   proposal: z.object({ id: Id, level: z.number(), byName: z.string(), own: z.boolean() }).nullable(),
   warnings: z.array(z.string()),
+  /** A stretch of use waits for a person's word. */
+  questions: z.number().int(),
 })
 export type ReviewRow = z.infer<typeof ReviewRow>
 export const listReview = contract({
@@ -176,7 +302,7 @@ export const listReview = contract({
   allow: ['reviewer', 'coordinator', 'administrator'],
   query: z.object({
     ...pageQuery,
-    show: z.enum(['due', 'proposed', 'vital', 'moved', 'all']).default('vital'),
+    show: z.enum(['due', 'proposed', 'vital', 'moved', 'asked', 'all']).default('vital'),
     roomId: Id.optional(),
     q: z.string().trim().max(100).optional(),
   }),

@@ -33,6 +33,48 @@ export const readWorklist = contract({
   answer: listOf(WorklistRow),
 })
 
+/** Bins that would not last over a holiday gap, spread over the orders that are left before it. */
+export const GapAhead = z.object({
+  gap: z
+    .object({
+      supplierId: Id,
+      supplierName: z.string(),
+      name: z.string(),
+      from: DateOnly,
+      to: DateOnly,
+      lastOrderBy: Instant,
+      lastArrival: Instant,
+      nextArrival: Instant,
+    })
+    .nullable(),
+  slots: z.array(
+    z.object({
+      orderBy: Instant,
+      arrives: Instant,
+      rows: z.array(
+        Bin.extend({
+          binId: Id,
+          /** What should stand there over the gap, at the place's own aim (an estimate). */
+          needed: z.number().int(),
+          suggested: z.object({ packs: z.number().int(), packSize: z.number().int(), units: z.number().int() }),
+          /** The shelf cannot take all of it. */
+          shelfTooSmall: z.boolean(),
+          inDraft: z.object({ orderId: Id, number: z.string() }).nullable(),
+        }),
+      ),
+    }),
+  ),
+})
+export type GapAhead = z.infer<typeof GapAhead>
+export const readGapAhead = contract({
+  method: 'GET',
+  path: '/worklist/gap',
+  summary: 'From ten days before a holiday gap: what would not last, and by which order to bring it',
+  allow: coordinator,
+  query: z.object({ supplierId: Id.optional() }),
+  answer: z.object({ items: z.array(GapAhead) }),
+})
+
 export const orderStates = [
   'draft',
   'sent',
