@@ -28,7 +28,15 @@ export interface Call<C extends Contract, T> {
   res: Response
 }
 
-const json = express.json({ limit: '64kb', strict: false, type: 'application/json' })
+const json = (limit: number) => express.json({ limit, strict: false, type: 'application/json' })
+const parsers = new Map<number, ReturnType<typeof json>>()
+
+/** One parser for each size of body a contract allows. */
+function parserFor(limit: number): ReturnType<typeof json> {
+  const known = parsers.get(limit) ?? json(limit)
+  parsers.set(limit, known)
+  return known
+}
 const bodyless = new Set(['GET', 'DELETE'])
 
 /** JSON pointers for what zod found. */
@@ -69,7 +77,7 @@ async function readBody(req: Request, res: Response, contract: Contract): Promis
   if (!hasBody) return undefined
   if (!req.is('application/json')) throw problem('not-json')
   await new Promise<void>((resolve, reject) => {
-    json(req, res, (error?: unknown) => (error ? reject(error as Error) : resolve()))
+    parserFor(contract.largest)(req, res, (error?: unknown) => (error ? reject(error as Error) : resolve()))
   })
   return req.body as unknown
 }

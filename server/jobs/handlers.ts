@@ -1,5 +1,6 @@
 import { DateTime } from 'luxon'
 import { z } from 'zod'
+import { causesOfChange } from '#shared/policy/in-force.ts'
 import { hospitalExists, readHospital } from '../catalogue/hospital.service.ts'
 import type { Clock } from '../clock.ts'
 import type { Db } from '../db/client.ts'
@@ -7,7 +8,7 @@ import { inTransaction } from '../db/transaction.ts'
 import { newestRun, recompute, recomputeAll } from '../policy/policy.service.ts'
 import { enqueue, type JobHandler } from './jobs.service.ts'
 
-const cause = z.enum(['count', 'service-level', 'calendar', 'rhythm', 'mode', 'entered', 'accepted', 'nightly'])
+const cause = z.enum(causesOfChange)
 const OneBin = z.object({ binId: z.number().int(), cause })
 const AllBins = z.object({ cause })
 

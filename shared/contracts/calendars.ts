@@ -56,6 +56,7 @@ export const updateCalendar = contract({
   params: idParams,
   body: z.strictObject({ name: text(120), days: z.array(CalendarDay).max(mostDays), retired: z.boolean() }).partial(),
   answer: Calendar,
+  largest: 300_000,
 })
 
 /** What an iCalendar file brought. */
@@ -76,4 +77,5 @@ export const importCalendar = contract({
   params: idParams,
   body: z.strictObject({ text: z.string().min(1, 'the file is empty').max(1_000_000, 'at most 1 MB') }),
   answer: CalendarImport,
+  largest: 1_100_000,
 })

@@ -32,7 +32,12 @@ export interface Contract<
   status: number
   /** Entries in the body are judged one by one, also for what text they hold. */
   judgesEntries: boolean
+  /** Largest body, in bytes. */
+  largest: number
 }
+
+/** Room for a hundred entries of a phone; a file needs more. */
+const usualLargest = 64 * 1024
 
 interface Parts<P extends z.ZodType, Q extends z.ZodType, B extends z.ZodType, A extends z.ZodType> {
   method: Method
@@ -45,6 +50,7 @@ interface Parts<P extends z.ZodType, Q extends z.ZodType, B extends z.ZodType, A
   answer?: A
   status?: number
   judgesEntries?: boolean
+  largest?: number
 }
 
 const nothing = z.object({})
@@ -67,6 +73,7 @@ export function contract<
     answer: parts.answer ?? (z.undefined() as unknown as A),
     status: parts.status ?? (parts.answer ? 200 : 204),
     judgesEntries: parts.judgesEntries ?? false,
+    largest: parts.largest ?? usualLargest,
   }
 }
 

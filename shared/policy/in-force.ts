@@ -5,6 +5,22 @@ export interface Levels {
   orderQuantity: number | null
 }
 
+/** What may make a bin's figures be looked at again. */
+export const causesOfChange = [
+  'count',
+  'service-level',
+  'calendar',
+  'rhythm',
+  'planned-change',
+  'exclusion',
+  'like-wards',
+  'mode',
+  'mode-vital',
+  'entered',
+  'accepted',
+  'nightly',
+] as const
+
 /** What decides whether a new calculation takes over. */
 export interface Settlement {
   mode: 'as-before' | 'beside' | 'calculated'
@@ -14,8 +30,8 @@ export interface Settlement {
   computed: Levels | null
   /** What a person entered. */
   entered: Levels
-  /** What made it be looked at. */
-  cause: 'count' | 'service-level' | 'calendar' | 'rhythm' | 'mode' | 'entered' | 'accepted' | 'nightly'
+  /** What made it be looked at. `mode-vital`: somebody but the reviewer changed how a vital item's room is kept. */
+  cause: (typeof causesOfChange)[number]
   /** Counts in a row, this one included, whose calculation stood below the figures in force. */
   lowerCounts: number
 }
@@ -38,7 +54,17 @@ type Cause = Settlement['cause']
 type Computed = Levels & { reorderPoint: number }
 
 /** These change the question itself, so the answer holds at once. */
-const atOnce = new Set<Cause>(['service-level', 'calendar', 'rhythm', 'mode', 'entered', 'accepted'])
+const atOnce = new Set<Cause>([
+  'service-level',
+  'calendar',
+  'rhythm',
+  'planned-change',
+  'exclusion',
+  'like-wards',
+  'mode',
+  'entered',
+  'accepted',
+])
 /** Acts of a person about this very figure: they may also lead below a level someone entered. */
 const byPerson = new Set<Cause>(['service-level', 'mode', 'accepted'])
 
