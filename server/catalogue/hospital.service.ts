@@ -7,6 +7,7 @@ import type { Reader, Tx } from '../db/client.ts'
 import type { Actor } from '../http/context.ts'
 import { enqueue } from '../jobs/jobs.service.ts'
 import { classLevels, setClassLevels } from '../review/classes.service.ts'
+import { checkCalendar } from './calendars.service.ts'
 import { findHospital, insertHospital, updateHospitalRow } from './hospital.repository.ts'
 
 /** The organisation's settings. @throws {Problem} not-ready before they are made */
@@ -27,6 +28,8 @@ export async function readHospital(db: Reader): Promise<Hospital> {
     resupplyPhone: row.resupplyPhone,
     orderingCost: row.orderingCost,
     holdingRatePerYear: row.holdingRatePerYear,
+    calendarId: row.calendarId === null ? null : String(row.calendarId),
+    pooling: row.isPooling,
     demo: row.isDemo,
   }
 }
@@ -34,26 +37,34 @@ export async function readHospital(db: Reader): Promise<Hospital> {
 export const hospitalExists = async (db: Reader): Promise<boolean> => (await findHospital(db)) !== null
 
 export async function createHospital(tx: Tx, clock: Clock, input: Hospital): Promise<void> {
-  const { levels, floor, ceiling, twoPersons, demo, ...rest } = input
   await insertHospital(tx, {
     id: 1,
+    ...(await columnsOf(tx, input)),
+    isDemo: input.demo,
+    createdAt: clock.now(),
+  })
+  await setClassLevels(tx, input.levels)
+}
+
+/** The settings as their row keeps them. */
+async function columnsOf(tx: Tx, hospital: Hospital) {
+  const { levels: _own, floor, ceiling, twoPersons, pooling, calendarId, demo: _made, ...rest } = hospital
+  return {
     ...rest,
     floorLevel: floor,
     ceilingLevel: ceiling,
     isTwoPersons: twoPersons,
-    isDemo: demo,
-    createdAt: clock.now(),
-  })
-  await setClassLevels(tx, levels)
+    isPooling: pooling,
+    calendarId: await checkCalendar(tx, calendarId),
+  }
 }
 
 export async function updateHospital(tx: Tx, clock: Clock, actor: Actor, change: Partial<Hospital>): Promise<Hospital> {
   const before = await readHospital(tx)
   const after = { ...before, ...change }
   check(after, change)
-  const { levels, floor, ceiling, twoPersons, demo: _demo, ...rest } = after
-  await updateHospitalRow(tx, { ...rest, floorLevel: floor, ceilingLevel: ceiling, isTwoPersons: twoPersons })
-  await setClassLevels(tx, levels)
+  await updateHospitalRow(tx, await columnsOf(tx, after))
+  await setClassLevels(tx, after.levels)
   await audit(tx, {
     at: clock.now(),
     userId: actor.id,
@@ -64,9 +75,16 @@ export async function updateHospital(tx: Tx, clock: Clock, actor: Actor, change:
     after,
   })
   const recompute =
-    change.levels || change.timeZone || change.orderingCost !== undefined || change.holdingRatePerYear !== undefined
+    change.levels ||
+    change.timeZone ||
+    after.calendarId !== before.calendarId ||
+    change.orderingCost !== undefined ||
+    change.holdingRatePerYear !== undefined
   if (recompute)
     await enqueue(tx, clock.now(), 'policy-all', { cause: change.levels ? 'service-level' : 'calendar' }, 'policy-all')
+  // What like wards teach is made anew in the night's run only.
+  if (after.pooling !== before.pooling)
+    await enqueue(tx, clock.now(), 'policy-all', { cause: 'nightly' }, 'policy-all-nightly')
   return after
 }
 

@@ -141,7 +141,8 @@ export async function liveBinsOfItem(db: Reader, itemId: number): Promise<number
   return rows.map((r) => r.id)
 }
 
-export async function liveBinsOfSupplier(db: Reader, supplierId: number): Promise<number[]> {
+export async function liveBinsOfSuppliers(db: Reader, supplierIds: number[]): Promise<number[]> {
+  if (supplierIds.length === 0) return []
   const rows = await db
     .select({ id: bins.id })
     .from(supplyAgreements)
@@ -150,7 +151,7 @@ export async function liveBinsOfSupplier(db: Reader, supplierId: number): Promis
       and(eq(binAssignments.itemId, supplyAgreements.itemId), isNull(binAssignments.assignedTo)),
     )
     .innerJoin(bins, and(eq(bins.id, binAssignments.binId), isNull(bins.retiredAt)))
-    .where(and(eq(supplyAgreements.supplierId, supplierId), eq(supplyAgreements.isPreferred, true)))
+    .where(and(inArray(supplyAgreements.supplierId, supplierIds), eq(supplyAgreements.isPreferred, true)))
   return rows.map((r) => r.id)
 }
 

@@ -1,5 +1,6 @@
-import { and, asc, count, eq, inArray, isNotNull, isNull, like, or, sql, type SQL } from 'drizzle-orm'
+import { and, asc, avg, count, eq, inArray, isNotNull, isNull, like, or, sql, type SQL } from 'drizzle-orm'
 import type { Reader, Tx } from '../db/client.ts'
+import { leadTimeObservations } from '../policy/policy.tables.ts'
 import { bins, rooms, suppliers, wards } from './catalogue.tables.ts'
 
 export interface ListFilter {
@@ -51,6 +52,7 @@ const roomColumns = {
   name: rooms.name,
   wardId: rooms.wardId,
   countEveryDays: rooms.countEveryDays,
+  countDays: rooms.countDays,
   mode: rooms.mode,
   retiredAt: rooms.retiredAt,
   wardName: wards.name,
@@ -101,6 +103,16 @@ export async function liveBinsOfRoom(db: Reader, roomId: number): Promise<number
   return rows.map((r) => r.id)
 }
 
+export async function liveBinsOfWards(db: Reader, wardIds: number[]): Promise<number[]> {
+  if (wardIds.length === 0) return []
+  const rows = await db
+    .select({ id: bins.id })
+    .from(bins)
+    .innerJoin(rooms, eq(rooms.id, bins.roomId))
+    .where(and(inArray(rooms.wardId, wardIds), isNull(bins.retiredAt)))
+  return rows.map((r) => r.id)
+}
+
 export async function liveRoomsOfWard(db: Reader, wardId: number): Promise<number[]> {
   const rows = await db
     .select({ id: rooms.id })
@@ -134,6 +146,23 @@ export async function listSupplierRows(
 export async function findSupplier(db: Reader, id: number): Promise<SupplierRow | null> {
   const [row] = await db.select().from(suppliers).where(eq(suppliers.id, id))
   return row ?? null
+}
+
+/** Deliveries whose time was seen, and the mean delay of what they brought beyond the stated time. */
+export async function listSeen(db: Reader, supplierIds: number[]) {
+  if (supplierIds.length === 0) return []
+  return db
+    .select({
+      supplierId: leadTimeObservations.supplierId,
+      deliveries:
+        sql<number>`count(distinct ${leadTimeObservations.orderedAt}, ${leadTimeObservations.arrivedAt})`.mapWith(
+          Number,
+        ),
+      delayDays: avg(leadTimeObservations.delayDays).mapWith(Number),
+    })
+    .from(leadTimeObservations)
+    .where(inArray(leadTimeObservations.supplierId, supplierIds))
+    .groupBy(leadTimeObservations.supplierId)
 }
 
 export async function insertSupplier(tx: Tx, row: typeof suppliers.$inferInsert): Promise<number> {

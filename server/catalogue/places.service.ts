@@ -7,8 +7,9 @@ import { startRoom, touchBins } from '../counts/levels.service.ts'
 import type { Reader, Tx } from '../db/client.ts'
 import { isDuplicate } from '../db/errors.ts'
 import type { Actor } from '../http/context.ts'
+import { checkCalendar } from './calendars.service.ts'
 import { readHospital } from './hospital.service.ts'
-import { liveBinsOfSupplier } from './items.repository.ts'
+import { liveBinsOfSuppliers } from './items.repository.ts'
 import * as repo from './places.repository.ts'
 
 export interface ListQuery {
@@ -48,6 +49,10 @@ export function codeTakenProblem(error: unknown): never {
   throw error
 }
 
+/** A named calendar as its row's id; nothing where none was given. */
+const calendarOfInput = async (db: Reader, input: { calendarId?: string | null }) =>
+  input.calendarId === undefined ? {} : { calendarId: await checkCalendar(db, input.calendarId) }
+
 // Wards -----------------------------------------------------------------------------------------------------------
 const toWard = (row: repo.WardRow): Ward => ({
   id: String(row.id),
@@ -55,6 +60,7 @@ const toWard = (row: repo.WardRow): Ward => ({
   name: row.name,
   kind: row.kind,
   site: row.site,
+  calendarId: row.calendarId === null ? null : String(row.calendarId),
   retired: row.retiredAt !== null,
 })
 
@@ -69,7 +75,8 @@ export async function createWard(
   actorId: number,
   input: Omit<Ward, 'id' | 'retired'>,
 ): Promise<Ward> {
-  const id = await repo.insertWard(tx, { ...input, retiredAt: null }).catch(codeTakenProblem)
+  const calendarId = await checkCalendar(tx, input.calendarId)
+  const id = await repo.insertWard(tx, { ...input, calendarId, retiredAt: null }).catch(codeTakenProblem)
   await audit(tx, {
     at: clock.now(),
     userId: actorId,
@@ -93,7 +100,9 @@ export async function updateWard(
   if (input.retired && (await repo.liveRoomsOfWard(tx, id)).length) {
     throw problem('in-use', 'This ward still has rooms. Retire or move them first.')
   }
-  await repo.updateWardRow(tx, id, changeOf(input, clock.now())).catch(codeTakenProblem)
+  const { calendarId: _named, ...rest } = input
+  const set = { ...changeOf(rest, clock.now()), ...(await calendarOfInput(tx, input)) }
+  await repo.updateWardRow(tx, id, set).catch(codeTakenProblem)
   await audit(tx, {
     at: clock.now(),
     userId: actor.id,
@@ -103,7 +112,10 @@ export async function updateWard(
     before,
     after: input,
   })
-  return toWard((await repo.findWard(tx, id))!)
+  const after = (await repo.findWard(tx, id))!
+  if (after.calendarId !== before.calendarId)
+    await touchBins(tx, clock.now(), await repo.liveBinsOfWards(tx, [id]), 'calendar')
+  return toWard(after)
 }
 
 // Rooms -----------------------------------------------------------------------------------------------------------
@@ -115,6 +127,7 @@ const toRoom = (row: repo.RoomRow, bins: number, below: number): Room => ({
   wardName: row.wardName,
   wardKind: row.wardKind,
   countEveryDays: row.countEveryDays,
+  countDays: row.countDays,
   mode: row.mode,
   bins,
   below,
@@ -146,6 +159,7 @@ interface RoomFields {
   name: string
   wardId: string
   countEveryDays: number
+  countDays: string
   mode: Room['mode']
 }
 
@@ -199,7 +213,7 @@ export async function updateRoom(
   const cause =
     input.mode !== undefined && input.mode !== before.mode
       ? 'mode'
-      : input.countEveryDays !== undefined
+      : input.countEveryDays !== undefined || input.countDays !== undefined
         ? 'rhythm'
         : null
   await touchBins(tx, clock.now(), bins, cause)
@@ -207,24 +221,39 @@ export async function updateRoom(
 }
 
 // Suppliers -------------------------------------------------------------------------------------------------------
-const toSupplier = ({ retiredAt, id, ...row }: repo.SupplierRow): Supplier => ({
-  ...row,
-  id: String(id),
-  retired: retiredAt !== null,
-})
+export type SupplierFields = Omit<Supplier, 'id' | 'retired' | 'seen'>
+
+async function toSuppliers(db: Reader, rows: repo.SupplierRow[]): Promise<Supplier[]> {
+  const seen = new Map(
+    (
+      await repo.listSeen(
+        db,
+        rows.map((r) => r.id),
+      )
+    ).map((s) => [s.supplierId, s]),
+  )
+  return rows.map(({ retiredAt, id, calendarId, ...row }) => ({
+    ...row,
+    id: String(id),
+    calendarId: calendarId === null ? null : String(calendarId),
+    seen: { deliveries: seen.get(id)?.deliveries ?? 0, delayDays: seen.get(id)?.delayDays ?? null },
+    retired: retiredAt !== null,
+  }))
+}
+
+async function oneSupplier(db: Reader, id: number): Promise<Supplier> {
+  const [supplier] = await toSuppliers(db, [(await repo.findSupplier(db, id))!])
+  return supplier!
+}
 
 export async function listSuppliers(db: Reader, query: ListQuery) {
   const { rows, total } = await repo.listSupplierRows(db, listFilter(query))
-  return listAnswer(rows.map(toSupplier), total, query)
+  return listAnswer(await toSuppliers(db, rows), total, query)
 }
 
-export async function createSupplier(
-  tx: Tx,
-  clock: Clock,
-  actorId: number,
-  input: Omit<Supplier, 'id' | 'retired'>,
-): Promise<Supplier> {
-  const id = await repo.insertSupplier(tx, { ...input, retiredAt: null }).catch(codeTakenProblem)
+export async function createSupplier(tx: Tx, clock: Clock, actorId: number, input: SupplierFields): Promise<Supplier> {
+  const calendarId = await checkCalendar(tx, input.calendarId)
+  const id = await repo.insertSupplier(tx, { ...input, calendarId, retiredAt: null }).catch(codeTakenProblem)
   await audit(tx, {
     at: clock.now(),
     userId: actorId,
@@ -233,7 +262,7 @@ export async function createSupplier(
     subjectId: id,
     after: input,
   })
-  return toSupplier((await repo.findSupplier(tx, id))!)
+  return oneSupplier(tx, id)
 }
 
 export async function updateSupplier(
@@ -241,14 +270,16 @@ export async function updateSupplier(
   clock: Clock,
   actor: Actor,
   id: number,
-  input: Partial<Omit<Supplier, 'id'>>,
+  input: Partial<SupplierFields> & { retired?: boolean },
 ): Promise<Supplier> {
   const before = await repo.findSupplier(tx, id)
   if (!before) throw problem('not-found')
-  const bins = await liveBinsOfSupplier(tx, id)
+  const bins = await liveBinsOfSuppliers(tx, [id])
   if (input.retired && bins.length)
     throw problem('in-use', 'Items in use still come from this supplier. Give them another one first.')
-  await repo.updateSupplierRow(tx, id, changeOf(input, clock.now())).catch(codeTakenProblem)
+  const { calendarId: _named, ...rest } = input
+  const set = { ...changeOf(rest, clock.now()), ...(await calendarOfInput(tx, input)) }
+  await repo.updateSupplierRow(tx, id, set).catch(codeTakenProblem)
   await audit(tx, {
     at: clock.now(),
     userId: actor.id,
@@ -259,7 +290,7 @@ export async function updateSupplier(
     after: input,
   })
   await touchBins(tx, clock.now(), bins, 'calendar')
-  return toSupplier((await repo.findSupplier(tx, id))!)
+  return oneSupplier(tx, id)
 }
 
 /** One supplier as stored, for those who compute calendars or send orders. */

@@ -35,14 +35,15 @@ export async function loadCatalogue(load: Load): Promise<void> {
   const administrator = await createPeople(load, (p) => p.role === 'administrator', roomIds)
   const by = administrator.get('5011')!
   const wardIds = new Map<string, string>()
-  for (const ward of wards) wardIds.set(ward.code, (await createWard(tx, clock, by, ward)).id)
-  for (const { code, name, ward, countEveryDays, mode } of rooms) {
-    const room = { code, name, wardId: wardIds.get(ward)!, countEveryDays, mode }
+  for (const ward of wards) wardIds.set(ward.code, (await createWard(tx, clock, by, { ...ward, calendarId: null })).id)
+  for (const { code, name, ward, countEveryDays, countDays, mode } of rooms) {
+    const room = { code, name, wardId: wardIds.get(ward)!, countEveryDays, countDays, mode }
     roomIds.set(code, (await createRoom(tx, clock, by, room)).id)
   }
   const staff = await createPeople(load, (p) => p.role !== 'administrator', roomIds)
   const supplierIds = new Map<string, string>()
-  for (const supplier of suppliers) supplierIds.set(supplier.code, (await createSupplier(tx, clock, by, supplier)).id)
+  for (const supplier of suppliers)
+    supplierIds.set(supplier.code, (await createSupplier(tx, clock, by, { ...supplier, calendarId: null })).id)
   const itemIds = await createItems(load, by, supplierIds)
   say(`Demo hospital: ${items.length} items, ${suppliers.length} suppliers, ${people.length} people.`)
   const binIds = await createBins(load, by, roomIds, itemIds)

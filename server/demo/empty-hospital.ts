@@ -21,6 +21,8 @@ const neutral: Hospital = {
   resupplyPhone: '',
   orderingCost: 0,
   holdingRatePerYear: 0.2,
+  calendarId: null,
+  pooling: true,
   demo: false,
 }
 

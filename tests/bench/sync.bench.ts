@@ -27,12 +27,19 @@ const { userId, binIds } = await inTransaction(database.db, async (tx) => {
   }
   const user = await createUser(tx, clock, null, who)
   const actorId = Number(user.id)
-  const ward = await createWard(tx, clock, actorId, { code: 'W', name: 'Ward', kind: 'general', site: '' })
+  const ward = await createWard(tx, clock, actorId, {
+    code: 'W',
+    name: 'Ward',
+    kind: 'general',
+    site: '',
+    calendarId: null,
+  })
   const room = await createRoom(tx, clock, actorId, {
     code: 'R',
     name: 'Room',
     wardId: ward.id,
     countEveryDays: 1,
+    countDays: '',
     mode: 'calculated',
   })
   const times = {
@@ -44,6 +51,7 @@ const { userId, binIds } = await inTransaction(database.db, async (tx) => {
     minimumOrder: 0,
     leadTimeDays: null,
     leadTimeSd: null,
+    calendarId: null,
   }
   const supplier = await createSupplier(tx, clock, actorId, {
     code: 'S',

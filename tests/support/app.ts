@@ -31,6 +31,8 @@ export const testHospital: Hospital = {
   resupplyPhone: '2210',
   orderingCost: 0,
   holdingRatePerYear: 0.2,
+  calendarId: null,
+  pooling: true,
   demo: false,
 }
 

@@ -42,6 +42,8 @@ export function aBin(id: string, more: Partial<Bin> = {}): Bin {
     states: ['below'],
     countEveryDays: 7,
     expectedOn: null,
+    closed: null,
+    gap: null,
     recordsDisagree: false,
     enteredReorderPoint: null,
     enteredPar: null,

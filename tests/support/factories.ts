@@ -24,6 +24,7 @@ export async function makeRoom(app: TestApp, more: Partial<Room> & { wardKind?: 
       name: more.name ?? `Supply room ${n}`,
       wardId: ward.id,
       countEveryDays: more.countEveryDays ?? 1,
+      countDays: more.countDays ?? '',
       mode: more.mode ?? 'calculated',
     }),
   )

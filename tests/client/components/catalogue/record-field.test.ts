@@ -60,6 +60,8 @@ describe('hospital settings', () => {
     resupplyPhone: '',
     orderingCost: 10,
     holdingRatePerYear: 0.2,
+    calendarId: null,
+    pooling: true,
     demo: true,
   }
 

@@ -1,0 +1,70 @@
+import { and, asc, count, eq, inArray, isNotNull, isNull } from 'drizzle-orm'
+import type { Reader, Tx } from '../db/client.ts'
+import { calendarDays, calendars, hospitals, suppliers, wards } from './catalogue.tables.ts'
+
+export type CalendarRow = typeof calendars.$inferSelect
+export type CalendarDayRow = typeof calendarDays.$inferSelect
+
+export async function listCalendarRows(db: Reader, filter: { retired: boolean }): Promise<CalendarRow[]> {
+  return db
+    .select()
+    .from(calendars)
+    .where(filter.retired ? isNotNull(calendars.retiredAt) : isNull(calendars.retiredAt))
+    .orderBy(asc(calendars.name), asc(calendars.id))
+}
+
+export async function findCalendar(db: Reader, id: number): Promise<CalendarRow | null> {
+  const [row] = await db.select().from(calendars).where(eq(calendars.id, id))
+  return row ?? null
+}
+
+export async function lockCalendar(tx: Tx, id: number): Promise<CalendarRow | null> {
+  const [row] = await tx.select().from(calendars).where(eq(calendars.id, id)).for('update')
+  return row ?? null
+}
+
+export async function insertCalendar(tx: Tx, name: string): Promise<number> {
+  const [made] = await tx.insert(calendars).values({ name, retiredAt: null }).$returningId()
+  return made!.id
+}
+
+export async function updateCalendarRow(tx: Tx, id: number, set: Partial<CalendarRow>): Promise<void> {
+  if (Object.keys(set).length) await tx.update(calendars).set(set).where(eq(calendars.id, id))
+}
+
+/** Days of some calendars, or of all that are in use, by date. */
+export async function listDays(db: Reader, calendarIds: number[] | null): Promise<CalendarDayRow[]> {
+  if (calendarIds && calendarIds.length === 0) return []
+  return db
+    .select()
+    .from(calendarDays)
+    .where(calendarIds ? inArray(calendarDays.calendarId, calendarIds) : undefined)
+    .orderBy(asc(calendarDays.calendarId), asc(calendarDays.date))
+}
+
+export async function insertDays(tx: Tx, calendarId: number, days: { date: string; name: string }[]): Promise<void> {
+  const rows = days.map((day) => ({ calendarId, ...day }))
+  for (let i = 0; i < rows.length; i += 500) await tx.insert(calendarDays).values(rows.slice(i, i + 500))
+}
+
+export async function deleteDays(tx: Tx, calendarId: number): Promise<void> {
+  await tx.delete(calendarDays).where(eq(calendarDays.calendarId, calendarId))
+}
+
+/** Who names each calendar: suppliers and wards in use, and the hospital. */
+export async function countUses(db: Reader) {
+  const bySupplier = await db
+    .select({ calendarId: suppliers.calendarId, n: count() })
+    .from(suppliers)
+    .where(and(isNotNull(suppliers.calendarId), isNull(suppliers.retiredAt)))
+    .groupBy(suppliers.calendarId)
+  const byWard = await db
+    .select({ calendarId: wards.calendarId, n: count() })
+    .from(wards)
+    .where(and(isNotNull(wards.calendarId), isNull(wards.retiredAt)))
+    .groupBy(wards.calendarId)
+  const [hospital] = await db.select({ calendarId: hospitals.calendarId }).from(hospitals).where(eq(hospitals.id, 1))
+  const counted = (rows: { calendarId: number | null; n: number }[]): Map<number, number> =>
+    new Map(rows.flatMap((r) => (r.calendarId === null ? [] : [[r.calendarId, r.n] as const])))
+  return { suppliers: counted(bySupplier), wards: counted(byWard), hospital: hospital?.calendarId ?? null }
+}
