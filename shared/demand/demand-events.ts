@@ -9,8 +9,14 @@ export interface DemandEvent {
   effectiveAt: number
 }
 
-/** Why an interval says nothing about use. */
-export type IntervalReason = 'was-empty' | 'rise-unexplained' | 'too-old'
+/**
+ * What is to be said of an interval. All but `merged` say why it tells nothing of use and is left out:
+ * `before-start` opened before the history start, `excluded` by a person, `rise-unexplained` more found than the records
+ * hold, `was-empty` nothing there to take, `closed` the place itself was shut, `too-old` over two years. `merged`: used,
+ * added to a neighbour across a miscount.
+ */
+export type IntervalReason =
+  'before-start' | 'excluded' | 'rise-unexplained' | 'was-empty' | 'closed' | 'too-old' | 'merged'
 
 /** Use between two counts. Units of use and days; `weight` is for forgetting, 1 for the newest. */
 export interface DemandInterval {
@@ -19,10 +25,14 @@ export interface DemandInterval {
   openedAt: number
   closedAt: number
   days: number
-  /** Days on which there was something to take. */
+  /** Epoch ms from which there was something to take; null: never. */
+  stockedFrom: number | null
+  /** Usual days on which there was something to take. */
   exposureDays: number
   /** Units used; negative when records and shelf disagree a little. */
   quantity: number
+  /** Units of it that a planned change announced beside the usual use. */
+  extraUnits: number
   /** The closing count found the shelf empty: at least this much was wanted. */
   censored: boolean
   weight: number

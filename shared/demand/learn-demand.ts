@@ -3,10 +3,12 @@ import type { FoldedRow } from '#shared/ledger/fold.ts'
 import type { LedgerRow } from '#shared/ledger/movement.ts'
 import { countRhythm } from './count-rhythm.ts'
 import type { DemandEvent, DemandInterval } from './demand-events.ts'
-import { demandIntervals } from './demand-intervals.ts'
+import { cutIntervals, type IntervalOptions } from './demand-intervals.ts'
+import { withExtraUnits } from './extra-units.ts'
 import { forget } from './forget.ts'
+import { mergeNegatives } from './merge-negatives.ts'
 import { mergeOverflow } from './merge-overflow.ts'
-import { policyIntervals, wastageRate } from './policy-intervals.ts'
+import { asPolicyIntervals, wastageRate } from './policy-intervals.ts'
 
 const dayMs = 86_400_000
 
@@ -17,6 +19,8 @@ export interface LearnedDemand {
   /** What the policy learns from. */
   forPolicy: NonNullable<PolicyInput['intervals']>
   wastagePerDay: number
+  /** Units used on a usual day, planned extra units apart: turns extra units ahead into days. Null: nothing learned. */
+  basePerDay: number | null
   /** Days to expect between counts. */
   rhythmDays: number
   /** Epoch ms and id of the last standing count. */
@@ -31,16 +35,19 @@ export interface LearnedDemand {
  */
 export function learnDemand(
   rows: readonly FoldedRow<LedgerRow>[],
-  options: { packSize: number; plannedRhythmDays: number },
+  options: IntervalOptions & { plannedRhythmDays: number },
   overflow: readonly (readonly FoldedRow<LedgerRow>[])[] = [],
 ): LearnedDemand {
   const own = eventsOf(rows)
-  const intervals = forget(demandIntervals(mergeOverflow([own, ...overflow.map(eventsOf)]), options))
+  const cut = withExtraUnits(cutIntervals(mergeOverflow([own, ...overflow.map(eventsOf)]), options))
+  const intervals = forget(cut.intervals)
+  const merged = mergeNegatives(intervals)
   const last = own.findLast((e) => e.type === 'count')
   return {
-    intervals,
-    forPolicy: policyIntervals(intervals),
+    intervals: intervals.map((i) => (merged.mergedIds.has(i.closingOpId) ? { ...i, why: 'merged' } : i)),
+    forPolicy: asPolicyIntervals(merged.intervals),
     wastagePerDay: wastageRate(intervals),
+    basePerDay: cut.basePerDay,
     rhythmDays: countRhythm(gapsOf(intervals), options.plannedRhythmDays),
     lastCount: last ? { at: last.effectiveAt, opId: last.opId } : null,
   }

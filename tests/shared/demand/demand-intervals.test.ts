@@ -1,7 +1,8 @@
 import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
+import { exposureOf, usualActivity, type ActivityChange } from '#shared/demand/activity.ts'
 import type { DemandEvent, DemandInterval } from '#shared/demand/demand-events.ts'
-import { demandIntervals } from '#shared/demand/demand-intervals.ts'
+import { demandIntervals, type IntervalOptions } from '#shared/demand/demand-intervals.ts'
 
 const HOUR = 3_600_000
 const DAY = 24 * HOUR
@@ -12,6 +13,9 @@ const ledger = (...rows: [number, string, number][]): DemandEvent[] =>
 
 const intervalsOf = (...rows: [number, string, number][]): DemandInterval[] =>
   demandIntervals(ledger(...rows), { packSize: 10 })
+
+const cut = (options: Partial<IntervalOptions>, ...rows: [number, string, number][]): DemandInterval[] =>
+  demandIntervals(ledger(...rows), { packSize: 10, ...options })
 
 describe('the identity of use', () => {
   it('adds what came and takes off what went, by every kind of movement', () => {
@@ -136,6 +140,124 @@ describe('empty bins', () => {
   it('are left out when it was put away just before the count', () => {
     const got = intervalsOf([0, 'count', 10], [7, 'count', 0], [13.9, 'receipt', 40], [14, 'count', 40])
     expect(got[1]).toMatchObject({ used: false, why: 'was-empty' })
+  })
+})
+
+describe('a history start', () => {
+  const weeks: [number, string, number][] = [
+    [0, 'count', 40],
+    [7, 'count', 30],
+    [14, 'count', 20],
+    [21, 'count', 10],
+  ]
+
+  it('lets counts before it open nothing, the piece across included', () => {
+    const got = cut({ historyStart: 10 * DAY }, ...weeks)
+    expect(got.map(({ why, used }) => [why, used])).toEqual([
+      ['before-start', false],
+      ['before-start', false],
+      [null, true],
+    ])
+  })
+
+  it('on the very count lets it open', () => {
+    expect(cut({ historyStart: 7 * DAY }, ...weeks).map(({ used }) => used)).toEqual([false, true, true])
+    expect(cut({ historyStart: null }, ...weeks).map(({ used }) => used)).toEqual([true, true, true])
+  })
+})
+
+describe('a change of item', () => {
+  it('cuts: each assignment has a ledger of its own, and no interval crosses from one to the other', () => {
+    const before = cut({}, [0, 'count', 40], [7, 'count', 30], [9, 'take', -2])
+    const after = cut({}, [10, 'count', 100], [17, 'count', 95])
+    expect(
+      [...before, ...after].map(({ openedAt, closedAt, quantity }) => [openedAt / DAY, closedAt / DAY, quantity]),
+    ).toEqual([
+      [0, 7, 10],
+      [10, 17, 5],
+    ])
+  })
+})
+
+describe('an exclusion', () => {
+  const spill = { id: 'x', from: 8 * DAY, to: 9 * DAY }
+
+  it('leaves out what it covers by more than twelve hours', () => {
+    const got = cut({ exclusions: [spill] }, [0, 'count', 40], [7, 'count', 30], [14, 'count', 5], [21, 'count', 0])
+    expect(got.map(({ why, used }) => [why, used])).toEqual([
+      [null, true],
+      ['excluded', false],
+      [null, true],
+    ])
+  })
+
+  it('leaves out a short interval it covers by more than half, and none it hardly touches', () => {
+    const short = { exclusions: [{ id: 'x', from: 7 * DAY, to: 7.4 * DAY }] }
+    expect(cut(short, [7, 'count', 30], [7.6, 'count', 20])[0]).toMatchObject({ used: false, why: 'excluded' })
+    expect(cut(short, [7, 'count', 30], [8.2, 'count', 20])[0]).toMatchObject({ used: true })
+    // Twelve hours exactly of a week are not more than twelve hours.
+    expect(
+      cut({ exclusions: [{ id: 'x', from: 6.5 * DAY, to: 9 * DAY }] }, [0, 'count', 9], [7, 'count', 3])[0],
+    ).toMatchObject({ used: true })
+  })
+
+  it('is not lost when a late count cuts anew', () => {
+    const late = cut({ exclusions: [spill] }, [7, 'count', 30], [8.5, 'count', 12], [14, 'count', 5])
+    expect(late.map(({ why }) => why)).toEqual(['excluded', null])
+    const middle = cut(
+      { exclusions: [{ ...spill, to: 10 * DAY }] },
+      [7, 'count', 30],
+      [9, 'count', 12],
+      [14, 'count', 5],
+    )
+    expect(middle.map(({ why }) => why)).toEqual(['excluded', 'excluded'])
+  })
+})
+
+describe('planned changes', () => {
+  const during = (from: number, to: number, more: Partial<ActivityChange>): Partial<IntervalOptions> => ({
+    exposure: exposureOf({
+      ...usualActivity('utc'),
+      changes: [{ id: 'c', from: from * DAY, to: to * DAY, factor: 1, extraPerDay: 0, weekdays: [], ...more }],
+    }),
+  })
+
+  it('count days by how busy they were, over the stocked part alone', () => {
+    const doubled = during(3, 100, { factor: 2 })
+    expect(cut(doubled, [0, 'count', 40], [7, 'count', 20])[0]!.exposureDays).toBeCloseTo(3 + 2 * 4, 9)
+    const [, second] = cut(doubled, [0, 'count', 9], [7, 'count', 0], [9, 'receipt', 40], [14, 'count', 30])
+    expect(second).toMatchObject({ days: 7, stockedFrom: 9 * DAY })
+    expect(second!.exposureDays).toBeCloseTo(10, 9)
+  })
+
+  it('leave out what lies in a closed time', () => {
+    const closed = during(7, 14, { factor: 0 })
+    const got = cut(closed, [0, 'count', 40], [7, 'count', 30], [13.8, 'count', 30], [21, 'count', 20])
+    expect(got.map(({ why, used }) => [why, used])).toEqual([
+      [null, true],
+      ['closed', false],
+      [null, true],
+    ])
+    expect(got[2]!.exposureDays).toBeCloseTo(7, 9)
+  })
+
+  it('do not take a short quiet stretch for a closed door', () => {
+    const exposure = exposureOf({ zone: 'utc', weekday: [1.2, 1.2, 1.2, 1.2, 1.2, 0.5, 0.5], changes: [] })
+    // 1 January 1970 was a Thursday: day 2 a Saturday.
+    expect(cut({ exposure }, [2.2, 'count', 9], [2.9, 'count', 8])[0]).toMatchObject({ used: true, why: null })
+  })
+
+  it('turn extra units into days at the base rate', () => {
+    const got = cut(during(7, 14, { extraPerDay: 3 }), [0, 'count', 60], [7, 'count', 46], [14, 'count', 11])
+    // 14 and 35 used, 21 of them announced: base (49 − 21 + ½) ÷ 14 a day.
+    const base = 28.5 / 14
+    expect(got.map(({ exposureDays }) => exposureDays)).toEqual([7, 7 + 21 / base])
+    expect(got[1]!.extraUnits).toBeCloseTo(21, 9)
+  })
+
+  it('survive an announcement larger than all that was used', () => {
+    const [interval] = cut(during(0, 7, { extraPerDay: 30 }), [0, 'count', 60], [7, 'count', 50])
+    expect(interval!.exposureDays).toBeCloseTo(7 + 210 / (0.5 / 7), 6)
   })
 })
 

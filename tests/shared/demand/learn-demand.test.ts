@@ -1,5 +1,6 @@
 import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
+import { exposureOf, usualActivity } from '#shared/demand/activity.ts'
 import { learnDemand } from '#shared/demand/learn-demand.ts'
 import { fold } from '#shared/ledger/fold.ts'
 import type { LedgerRow } from '#shared/ledger/movement.ts'
@@ -59,6 +60,40 @@ describe('what one assignment teaches', () => {
       lastCount: null,
       rhythmDays: 3,
     })
+  })
+
+  it('names the intervals that were added to a neighbour across a miscount, and uses them', () => {
+    const got = learn([30, 25, 29, 20, 15].map((found, i) => row(i, 'count', found, i * 7 * DAY)))
+    expect(got.intervals.map(({ quantity, why, used }) => [quantity, why, used])).toEqual([
+      [5, null, true],
+      [-4, 'merged', true],
+      [9, 'merged', true],
+      [5, null, true],
+    ])
+    expect(got.forPolicy.map(({ quantity, days }) => [quantity, days])).toEqual([
+      [5, 7],
+      [5, 14],
+      [5, 7],
+    ])
+  })
+
+  it('knows what a usual day uses beside what was announced', () => {
+    const change = { id: 'c', from: 7 * DAY, to: 14 * DAY, factor: 1, extraPerDay: 3, weekdays: [] }
+    const exposure = exposureOf({ ...usualActivity('utc'), changes: [change] })
+    const rows = [row(0, 'count', 60, 0), row(1, 'count', 46, 7 * DAY), row(2, 'count', 11, 14 * DAY)]
+    const got = learnDemand(fold(rows).rows, { ...options, exposure })
+    expect(got.basePerDay).toBeCloseTo(28.5 / 14, 12)
+    // The mean a usual day is what it would have been without the announced units, but for half a unit's rounding.
+    const { demand } = reorderPoint({ intervals: got.forPolicy, leadTime: { meanDays: 5 }, serviceLevel: 0.98 })
+    expect(demand!.meanPerDay).toBeCloseTo(2, 1)
+    expect(learn([row(0, 'count', 9, 0)]).basePerDay).toBeNull()
+  })
+
+  it('leaves no trace of what lies before the history start in the policy', () => {
+    const rows = [90, 60, 30, 20, 10].map((found, i) => row(i, 'count', found, i * 7 * DAY))
+    const got = learnDemand(fold(rows).rows, { ...options, historyStart: 14 * DAY })
+    expect(got.forPolicy.map(({ quantity }) => quantity)).toEqual([10, 10])
+    expect(got.intervals).toHaveLength(4)
   })
 
   it('does not let a recount minutes later look like a burst of use', () => {

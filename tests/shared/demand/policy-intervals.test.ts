@@ -14,8 +14,10 @@ const chain = (uses: number[], changes: Record<number, Partial<DemandInterval>> 
     openedAt: i * days * DAY,
     closedAt: (i + 1) * days * DAY,
     days,
+    stockedFrom: i * days * DAY,
     exposureDays: days,
     quantity,
+    extraUnits: 0,
     censored: false,
     weight: 1,
     used: true,
@@ -69,9 +71,13 @@ describe('negative use', () => {
 })
 
 describe('what is left out', () => {
-  it('goes along with weight 0, but not for mere age', () => {
+  it('goes along with weight 0, but not for mere age or from before the history start', () => {
     const got = policyIntervals(
-      chain([5, 6, 7, 8], { 0: { used: false, why: 'too-old' }, 2: { used: false, why: 'was-empty' } }),
+      chain([4, 5, 6, 7, 8], {
+        0: { used: false, why: 'too-old' },
+        1: { used: false, why: 'before-start' },
+        3: { used: false, why: 'was-empty' },
+      }),
     )
     expect(got.map(({ quantity, weight }) => [quantity, weight])).toEqual([
       [6, 1],
