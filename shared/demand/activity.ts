@@ -78,7 +78,7 @@ export function exposureOf(activity: Activity): Exposure {
 
 function check({ weekday, changes }: Activity): void {
   const mean = weekday.reduce((sum, weight) => sum + weight, 0) / 7
-  if (weekday.length !== 7 || weekday.some((weight) => !(weight >= 0)) || Math.abs(mean - 1) > 1e-6)
+  if (weekday.length !== 7 || weekday.some((weight) => !(weight >= 0)) || Math.abs(mean - 1) > 1e-3)
     throw new RangeError('weekday weights are seven figures, Monday first, none negative, with mean 1')
   for (const change of changes) {
     if (!(change.factor >= 0 && change.extraPerDay >= 0))

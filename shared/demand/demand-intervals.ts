@@ -34,9 +34,10 @@ export interface IntervalOptions {
  * use = opening + put away + transfers in − transfers out − wastage − put on hold + released ± adjust − closing.
  * Takes are use: they stay inside and are never subtracted. Counts within 12 hours are one count (the later closes and
  * opens). Negative use is kept; an interval that says nothing is listed with its reason and not used.
- * An exclusion is a stretch of time, so a late count that cuts anew cannot lose it: it leaves out the intervals it covers
- * by more than 12 hours or more than half, and those that hold half of it or more. Exposure counts usual days with something to take; units announced by a planned
- * change are turned into such days (`withExtraUnits`).
+ * An exclusion is a stretch of time, so a late count that cuts anew cannot lose it: it leaves out the intervals it
+ * covers by more than 12 hours or more than half, and, being longer than 12 hours itself, those that hold half of it.
+ * Exposure counts usual days with something to take; units announced by a planned change are turned into such days
+ * (`withExtraUnits`).
  * Source: the consumption identity of the public-health store handbooks, with stock-outs as censoring (Conrad 1976).
  *
  * @param events standing rows in effective order
@@ -131,8 +132,8 @@ const firstReason = (reasons: Record<Exclude<IntervalReason, 'merged'>, boolean>
 
 function covers(exclusion: Exclusion, span: { from: number; to: number }): boolean {
   const overlap = Math.min(exclusion.to, span.to) - Math.max(exclusion.from, span.from)
-  if (overlap <= 0) return false
-  return overlap > shortestMs || overlap > (span.to - span.from) / 2 || overlap >= (exclusion.to - exclusion.from) / 2
+  const length = exclusion.to - exclusion.from
+  return overlap > shortestMs || overlap > (span.to - span.from) / 2 || (length > shortestMs && overlap >= length / 2)
 }
 
 function firstPutAway(events: readonly DemandEvent[]): number | null {

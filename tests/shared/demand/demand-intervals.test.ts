@@ -203,7 +203,7 @@ describe('an exclusion', () => {
 
   it('is not lost when a late count cuts anew', () => {
     const late = cut({ exclusions: [spill] }, [7, 'count', 30], [8.5, 'count', 12], [14, 'count', 5])
-    expect(late.map(({ why }) => why)).toEqual(['excluded', null])
+    expect(late.map(({ why }) => why)).toEqual(['excluded', 'excluded'])
     const middle = cut(
       { exclusions: [{ ...spill, to: 10 * DAY }] },
       [7, 'count', 30],
