@@ -11,6 +11,8 @@ export interface OrderCalendar {
   arrivalTime: string
   /** Local dates, YYYY-MM-DD, on which neither orders are taken nor deliveries made. */
   holidays: ReadonlySet<string>
+  /** Local dates on which the ward takes no delivery; order days and the lead in working days go on as ever. */
+  closedToDeliveries?: ReadonlySet<string>
 }
 
 /** No calendar: an order may be placed at every moment and takes so many days. */
@@ -36,18 +38,23 @@ const at = (day: DateTime, time: string): DateTime => {
 export function nextSlot(calendar: OrderCalendar, from: number, after = false): number {
   const start = DateTime.fromMillis(from, { zone: calendar.zone }).startOf('day')
   for (let ahead = 0; ahead <= searchDays; ahead += 1) {
-    const day = start.plus({ days: ahead })
-    if (calendar.holidays.has(day.toISODate() ?? '')) continue
-    const times = calendar.slots.filter((s) => s.weekday === day.weekday).map((s) => at(day, s.cutOff).toMillis())
-    const fits = times.filter((t) => (after ? t > from : t >= from))
-    if (fits.length) return Math.min(...fits)
+    const fits = slotsOn(calendar, start.plus({ days: ahead })).find((t) => (after ? t > from : t >= from))
+    if (fits !== undefined) return fits
   }
   throw new RangeError('the order calendar has no day within a year')
 }
 
+/** Cut-offs of one local day, earliest first; none on a holiday. */
+export function slotsOn(calendar: OrderCalendar, day: DateTime): number[] {
+  if (calendar.holidays.has(day.toISODate() ?? '')) return []
+  const times = calendar.slots.filter((s) => s.weekday === day.weekday).map((s) => at(day, s.cutOff).toMillis())
+  return times.sort((a, b) => a - b)
+}
+
 /**
  * When an order placed by a slot arrives: its lead in working or calendar days, then the next permitted delivery
- * moment, never before the slot itself. Working days leave holidays out; calendar days count them.
+ * moment, never before the slot itself. Working days leave holidays out; calendar days count them. Where the ward takes
+ * no delivery, the goods come on the next day that it does.
  *
  * @param slot epoch ms of a cut-off
  * @returns epoch ms
@@ -55,6 +62,7 @@ export function nextSlot(calendar: OrderCalendar, from: number, after = false): 
  */
 export function arrivalOf(calendar: OrderCalendar, slot: number): number {
   const isHoliday = (d: DateTime): boolean => calendar.holidays.has(d.toISODate() ?? '')
+  const takesNone = (d: DateTime): boolean => calendar.closedToDeliveries?.has(d.toISODate() ?? '') ?? false
   let day = DateTime.fromMillis(slot, { zone: calendar.zone }).startOf('day')
   if (calendar.lead.kind === 'calendar') day = day.plus({ days: calendar.lead.days })
   else {
@@ -68,7 +76,8 @@ export function arrivalOf(calendar: OrderCalendar, slot: number): number {
   }
   for (let ahead = 0; ahead <= searchDays; ahead += 1, day = day.plus({ days: 1 })) {
     const arrival = at(day, calendar.arrivalTime).toMillis()
-    if (calendar.arrivalDays.includes(day.weekday) && !isHoliday(day) && arrival >= slot) return arrival
+    if (calendar.arrivalDays.includes(day.weekday) && !isHoliday(day) && !takesNone(day) && arrival >= slot)
+      return arrival
   }
   throw new RangeError('the order calendar has no delivery day within a year')
 }

@@ -1,3 +1,4 @@
+import { nextCountAt, type CountingCalendar } from './counting-calendar.ts'
 import { arrivalOf, nextSlot, type OpenCalendar, type OrderCalendar } from './order-calendar.ts'
 
 const dayMs = 86_400_000
@@ -23,6 +24,8 @@ interface Moment {
   asOf: number
   /** Days to expect between counts. */
   rhythmDays: number
+  /** Days on which the room counts; every day without it. */
+  counting?: CountingCalendar | null
 }
 
 /**
@@ -30,12 +33,13 @@ interface Moment {
  * can be on the shelf. The count stands still; until the next planned count so does this interval, and once that is
  * overdue it grows slot by slot, so that the reorder point rises to meet the bin.
  *
- * c = last count, n = max(asOf, c + rhythm), o1 = first slot at or after asOf, o2 = first slot after o1 and not before n,
+ * c = last count, n = max(asOf, c + rhythm moved on to a counting day), o1 = first slot at or after asOf, o2 = first slot after o1 and not before n,
  * P = arrival(o2) − c. Source: the (R, S) review argument of Silver, Pyke & Thomas ch. 6 with dated slots;
  * daylight saving by wall time, differences in UTC.
  */
 export function protectionInterval(calendar: OrderCalendar | OpenCalendar, moment: Moment): ProtectionInterval {
-  const planned = Math.max(moment.asOf, moment.countedAt + moment.rhythmDays * dayMs)
+  const due = nextCountAt(moment.counting ?? null, moment.countedAt, moment.rhythmDays)
+  const planned = Math.max(moment.asOf, due)
   const { first, next } = 'leadDays' in calendar ? openSlots(moment, planned) : datedSlots(calendar, moment, planned)
   const arrives = (slot: number): number =>
     'leadDays' in calendar ? slot + calendar.leadDays * dayMs : arrivalOf(calendar, slot)

@@ -2,6 +2,7 @@ import { readFileSync } from 'node:fs'
 import { describe, expect, it } from 'vitest'
 import { arrivalOf, nextSlot, type OrderCalendar } from '#shared/calendar/order-calendar.ts'
 import { protectionInterval } from '#shared/calendar/protection-interval.ts'
+import { exposureOf } from '#shared/demand/activity.ts'
 
 // 35 dated cases made with R 4.2.2 and derived again by an independent Python program; see the file's own header.
 interface Row {
@@ -18,12 +19,15 @@ interface Row {
     delivery_time: string
   }
   holidays: string[]
+  weekday_weights_mon_to_sun: number[]
   expected: {
     order_now_slot: string
     arrival: string
     next_slot: string
     next_arrival: string
+    lead_days_from_now: number
     protection_days: number
+    weighted_protection_days: number
   }
 }
 const { rows } = JSON.parse(readFileSync(new URL('../../fixtures/stats/calendar.json', import.meta.url), 'utf8')) as {
@@ -52,12 +56,22 @@ describe('protectionInterval', () => {
       asOf: now,
       rhythmDays: row.next_count === null ? 0 : (ms(row.next_count) - now) / dayMs,
     })
-    expect(shown(found.firstOrderBy)).toBe(row.expected.order_now_slot)
-    expect(shown(found.firstArrival)).toBe(row.expected.arrival)
-    expect(shown(found.nextOrderBy)).toBe(row.expected.next_slot)
-    expect(shown(found.nextArrival)).toBe(row.expected.next_arrival)
-    expect(found.days).toBeCloseTo(row.expected.protection_days, 6)
+    const weekday = row.weekday_weights_mon_to_sun
+    const { days } = exposureOf({ zone: 'utc', weekday, changes: [] }).between(now, found.nextArrival)
+    const close = (figure: number): unknown => expect.closeTo(figure, 9)
+    // Each field of the case, none left out.
+    expect(row.expected).toStrictEqual({
+      order_now_slot: shown(found.firstOrderBy),
+      arrival: shown(found.firstArrival),
+      next_slot: shown(found.nextOrderBy),
+      next_arrival: shown(found.nextArrival),
+      lead_days_from_now: close((found.firstArrival - now) / dayMs),
+      protection_days: close(found.days),
+      weighted_protection_days: close(days),
+    })
   })
+
+  it('has all 35 cases', () => expect(rows).toHaveLength(35))
 
   const stores: OrderCalendar = {
     zone: 'Europe/London',
@@ -89,6 +103,28 @@ describe('protectionInterval', () => {
     const countedAt = Date.parse('2026-11-02T09:00:00Z')
     const found = protectionInterval({ leadDays: 2.5 }, { countedAt, asOf: countedAt, rhythmDays: 1 })
     expect(found).toMatchObject({ days: 3.5, leadMeanDays: 2.5, reviewDays: 1, firstOrderBy: countedAt })
+  })
+
+  it('waits with a planned count for a day on which the room counts', () => {
+    // Friday 09:00, next day's count: nobody counts at the weekend or on that Monday, so it is Tuesday's.
+    const countedAt = Date.parse('2026-11-06T09:00:00Z')
+    const moment = { countedAt, asOf: countedAt, rhythmDays: 1 }
+    const counting = { zone: 'Europe/London', weekdays: [1, 2, 3, 4, 5], closed: new Set(['2026-11-09']) }
+    const found = protectionInterval(stores, { ...moment, counting })
+    expect(new Date(found.nextOrderBy).toISOString()).toBe('2026-11-10T10:00:00.000Z')
+    expect(new Date(found.nextArrival).toISOString()).toBe('2026-11-11T14:00:00.000Z')
+    expect(found.days).toBeCloseTo(5 + 5 / 24, 9)
+    expect(protectionInterval(stores, moment).days).toBeCloseTo(4 + 5 / 24, 9)
+  })
+
+  it('brings goods when the ward takes deliveries again; order days and lead stay', () => {
+    const slot = Date.parse('2026-11-02T10:00:00Z')
+    const closed = { ...stores, closedToDeliveries: new Set(['2026-11-03', '2026-11-04']) }
+    expect(new Date(arrivalOf(closed, slot)).toISOString()).toBe('2026-11-05T14:00:00.000Z')
+    expect(nextSlot(closed, Date.parse('2026-11-03T09:00:00Z'))).toBe(Date.parse('2026-11-03T10:00:00Z'))
+    // Two working days are Wednesday, closed or not; not one of them more.
+    const twoDays = { ...closed, lead: { kind: 'working' as const, days: 2 } }
+    expect(new Date(arrivalOf(twoDays, slot)).toISOString()).toBe('2026-11-05T14:00:00.000Z')
   })
 
   it('says so when a calendar has no order day', () => {
