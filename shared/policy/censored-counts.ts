@@ -31,15 +31,16 @@ type RateRule = (moments: DemandMoments, dispersion: number) => number
  * Source: statistics, 4.0 "Mixture with censored intervals".
  */
 export function censoredCounts(
-  intervals: ResolvedInterval[],
+  intervals: readonly ResolvedInterval[],
   prior: { nu0: number; w0: number },
   rateRule: RateRule = (moments) => moments.meanPerDay,
+  plain: DemandMoments = demandMoments(intervals),
 ): CensoredCounts {
+  let moments = plain
+  if (!intervals.some((interval) => interval.censored)) return { moments, freedom: Math.max(0, moments.intervals - 1) }
   const whole = intervals.filter((interval) => !interval.censored)
   const freedom = whole.length > 0 ? Math.max(0, demandMoments(whole).intervals - 1) : 0
-  let moments = demandMoments(intervals)
   const bound = DISPERSION_BOUND * Math.max(1, prior.nu0 > 0 ? prior.w0 : 1, moments.dispersion ?? 1)
-  if (whole.length === intervals.length) return { moments, freedom }
   let dispersion = 1.0001
   let rate = moments.meanPerDay > 0 ? moments.meanPerDay : 0.5 / moments.exposureDays
   for (let round = 0; round < MOST_ROUNDS; round++) {
@@ -56,7 +57,7 @@ export function censoredCounts(
   return { moments, freedom }
 }
 
-function expectedUse(intervals: ResolvedInterval[], rate: number, dispersion: number): ExpectedUse[] {
+function expectedUse(intervals: readonly ResolvedInterval[], rate: number, dispersion: number): ExpectedUse[] {
   return intervals.map(({ censored, quantity, exposureDays }) =>
     censored
       ? expectedAtLeast(rate * exposureDays, dispersion, Math.ceil(quantity))

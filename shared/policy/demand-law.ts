@@ -13,6 +13,8 @@ export interface DemandLaw {
   loss?: (r: number) => number
   /** Exact quantile of a continuous law, before it is rounded up; whole-number laws have none. */
   exactQuantile?: (p: number) => number
+  /** Smallest whole r >= 0 with cdf(r) >= p, where a law finds it faster than by asking `cdf` here and there. */
+  level?: (p: number) => number
   /** Rounding to allow for where the distribution function is a long sum; 0 unless given. */
   slack?: number
 }
@@ -30,6 +32,7 @@ export function levelFor(law: DemandLaw, p: number): number {
     if (!(level <= Number.MAX_SAFE_INTEGER)) throw new RangeError('the distribution function does not reach p')
     return level
   }
+  if (law.level) return law.level(p)
   return integerQuantile(
     law.cdf,
     p - (law.slack ?? 0),

@@ -1,5 +1,3 @@
-import type { ResolvedInterval } from './resolve-input.ts'
-
 /** Mean, variance and effective sizes of a demand history. Units: units of use per day of exposure. */
 export interface DemandMoments {
   meanPerDay: number
@@ -13,10 +11,25 @@ export interface DemandMoments {
   exposureDays: number
 }
 
+/** What moments are made from, of one interval. */
+interface Counted {
+  exposureDays: number
+  quantity: number
+  weight: number
+}
+
 /** An expected quantity and its expected square, standing in for an interval that ended empty. */
 export interface ExpectedUse {
   quantity: number
   square: number
+}
+
+/** Intervals as columns of one length. `square`: expected squares, where some quantities are expectations. */
+export interface DemandColumns {
+  exposureDays: Float64Array
+  quantity: Float64Array
+  weight: Float64Array
+  square?: Float64Array
 }
 
 /**
@@ -29,33 +42,48 @@ export interface ExpectedUse {
  *
  * @throws {RangeError} without intervals
  */
-export function demandMoments(intervals: ResolvedInterval[], expected?: ExpectedUse[]): DemandMoments {
-  if (intervals.length === 0) throw new RangeError('demandMoments needs at least one interval')
+export function demandMoments(intervals: readonly Counted[], expected?: ExpectedUse[]): DemandMoments {
+  const count = intervals.length
+  const columns: DemandColumns = {
+    exposureDays: new Float64Array(count),
+    quantity: new Float64Array(count),
+    weight: new Float64Array(count),
+  }
+  if (expected) columns.square = new Float64Array(count)
+  for (let i = 0; i < count; i++) {
+    const { exposureDays, quantity, weight } = intervals[i]!
+    columns.exposureDays[i] = exposureDays
+    columns.quantity[i] = expected?.[i]?.quantity ?? quantity
+    columns.weight[i] = weight
+    if (columns.square) columns.square[i] = expected![i]!.square
+  }
+  return columnMoments(columns, 0, count)
+}
+
+/**
+ * `demandMoments` of the rows `from` to before `to` of columns.
+ *
+ * @throws {RangeError} without rows
+ */
+export function columnMoments(columns: DemandColumns, from: number, to: number): DemandMoments {
+  if (to <= from) throw new RangeError('demandMoments needs at least one interval')
   let weights = 0
   let squaredWeights = 0
   let exposure = 0
   let weightedExposure = 0
   let quantity = 0
-  intervals.forEach((interval, i) => {
-    const { weight, exposureDays } = interval
+  for (let i = from; i < to; i++) {
+    const weight = columns.weight[i]!
+    const days = columns.exposureDays[i]!
     weights += weight
     squaredWeights += weight * weight
-    exposure += weight * exposureDays
-    weightedExposure += weight * weight * exposureDays
-    quantity += weight * (expected?.[i]?.quantity ?? interval.quantity)
-  })
+    exposure += weight * days
+    weightedExposure += weight * weight * days
+    quantity += weight * columns.quantity[i]!
+  }
   const meanPerDay = quantity / exposure
-  const divisor = weights - weightedExposure / exposure
-  let squares = 0
-  intervals.forEach((interval, i) => {
-    const fitted = meanPerDay * interval.exposureDays
-    const guess = expected?.[i]
-    const square = guess
-      ? guess.square - 2 * fitted * guess.quantity + fitted * fitted
-      : (interval.quantity - fitted) ** 2
-    squares += (interval.weight * square) / interval.exposureDays
-  })
-  const variancePerDay = intervals.length > 1 ? squares / divisor : null
+  const variancePerDay =
+    to - from > 1 ? squaresAround(meanPerDay, columns, from, to) / (weights - weightedExposure / exposure) : null
   return {
     meanPerDay,
     variancePerDay,
@@ -63,4 +91,19 @@ export function demandMoments(intervals: ResolvedInterval[], expected?: Expected
     intervals: (weights * weights) / squaredWeights,
     exposureDays: (exposure * exposure) / weightedExposure,
   }
+}
+
+/** sum w (x - mu t)^2/t, with E[x^2] in place of x^2 where there are expectations. */
+function squaresAround(meanPerDay: number, columns: DemandColumns, from: number, to: number): number {
+  let squares = 0
+  for (let i = from; i < to; i++) {
+    const days = columns.exposureDays[i]!
+    const fitted = meanPerDay * days
+    const seen = columns.quantity[i]!
+    const square = columns.square
+      ? columns.square[i]! - 2 * fitted * seen + fitted * fitted
+      : (seen - fitted) * (seen - fitted)
+    squares += (columns.weight[i]! * square) / days
+  }
+  return squares
 }

@@ -1,4 +1,4 @@
-import { demandMoments } from './demand-moments.ts'
+import type { DemandMoments } from './demand-moments.ts'
 import type { PolicyWarning } from './policy-result.ts'
 import type { ResolvedInterval } from './resolve-input.ts'
 
@@ -15,55 +15,56 @@ const STANDARD_ERRORS = 2
  * Lumpy: average gap between intervals with use above 1.32 and squared variation of their daily use above 0.49.
  * Autocorrelated: lag-1 correlation of the residuals (x - mu t)/sqrt t above 2/sqrt n, from 12 intervals on.
  * Trend: slope of a log-linear rate above two of its standard errors, from 12 intervals on.
- * Source: statistics, 3.3, 1.1 and 4.12.
+ * Shape: `moments` are those of the intervals. Source: statistics, 3.3, 1.1 and 4.12.
  */
-export function demandPatterns(intervals: ResolvedInterval[]): PolicyWarning[] {
+export function demandPatterns(intervals: readonly ResolvedInterval[], moments: DemandMoments): PolicyWarning[] {
   const found: PolicyWarning[] = []
   if (isLumpy(intervals)) found.push('lumpy')
-  if (isAutocorrelated(intervals)) found.push('autocorrelated')
-  if (hasTrend(intervals)) found.push('trend')
+  if (intervals.length < FEWEST_FOR_PATTERN) return found
+  if (isAutocorrelated(intervals, moments.meanPerDay)) found.push('autocorrelated')
+  if (hasTrend(intervals, moments)) found.push('trend')
   return found
 }
 
-function isLumpy(intervals: ResolvedInterval[]): boolean {
-  const rates = intervals.filter(({ quantity }) => quantity > 0).map((i) => i.quantity / i.exposureDays)
-  if (rates.length < 2) return false
-  const mean = rates.reduce((sum, rate) => sum + rate, 0) / rates.length
-  const variance = rates.reduce((sum, rate) => sum + (rate - mean) ** 2, 0) / (rates.length - 1)
-  return intervals.length / rates.length > LUMPY_ADI && variance / (mean * mean) > LUMPY_CV2
+function isLumpy(intervals: readonly ResolvedInterval[]): boolean {
+  let count = 0
+  let sum = 0
+  for (const { quantity, exposureDays } of intervals)
+    if (quantity > 0) {
+      count++
+      sum += quantity / exposureDays
+    }
+  if (count < 2 || !(intervals.length / count > LUMPY_ADI)) return false
+  const mean = sum / count
+  let squares = 0
+  for (const { quantity, exposureDays } of intervals) if (quantity > 0) squares += (quantity / exposureDays - mean) ** 2
+  return squares / (count - 1) / (mean * mean) > LUMPY_CV2
 }
 
-function isAutocorrelated(intervals: ResolvedInterval[]): boolean {
-  if (intervals.length < FEWEST_FOR_PATTERN) return false
-  const { meanPerDay } = demandMoments(intervals)
-  const residuals = intervals.map((i) => (i.quantity - meanPerDay * i.exposureDays) / Math.sqrt(i.exposureDays))
-  const squares = residuals.reduce((sum, e) => sum + e * e, 0)
-  const products = residuals.slice(1).reduce((sum, e, i) => sum + e * residuals[i]!, 0)
+function isAutocorrelated(intervals: readonly ResolvedInterval[], meanPerDay: number): boolean {
+  let squares = 0
+  let products = 0
+  let before = 0
+  for (const { quantity, exposureDays } of intervals) {
+    const residual = (quantity - meanPerDay * exposureDays) / Math.sqrt(exposureDays)
+    squares += residual * residual
+    products += residual * before
+    before = residual
+  }
   return squares > 0 && products / squares > STANDARD_ERRORS / Math.sqrt(intervals.length)
 }
 
-/** Quasi-Poisson regression ln mu_i = a + b time_i with offset ln t_i, by Newton steps; time in mean intervals. */
-function hasTrend(intervals: ResolvedInterval[]): boolean {
-  if (intervals.length < FEWEST_FOR_PATTERN) return false
-  const { meanPerDay, dispersion } = demandMoments(intervals)
+const MOST_STEPS = 50
+
+/** Quasi-Poisson regression ln mu_i = a + b time_i with offset ln t_i, by Newton steps; time as a share of the whole. */
+function hasTrend(intervals: readonly ResolvedInterval[], { meanPerDay, dispersion }: DemandMoments): boolean {
   if (!(meanPerDay > 0 && dispersion !== null)) return false
-  let clock = 0
-  const times = intervals.map(({ days }) => (clock += days) - days / 2)
-  const middle = clock / 2
+  const times = middleTimes(intervals)
   let intercept = Math.log(meanPerDay)
   let slope = 0
   let information = 0
-  for (let round = 0; round < 50; round++) {
-    let [ga, gb, aa, ab, bb] = [0, 0, 0, 0, 0]
-    intervals.forEach(({ exposureDays, quantity, weight }, i) => {
-      const time = (times[i]! - middle) / clock
-      const fitted = exposureDays * Math.exp(intercept + slope * time)
-      ga += weight * (quantity - fitted)
-      gb += weight * (quantity - fitted) * time
-      aa += weight * fitted
-      ab += weight * fitted * time
-      bb += weight * fitted * time * time
-    })
+  for (let step = 0; step < MOST_STEPS; step++) {
+    const { ga, gb, aa, ab, bb } = scores(intervals, times, intercept, slope)
     const determinant = aa * bb - ab * ab
     if (!(determinant > 0)) return false
     const stepSlope = (aa * gb - ab * ga) / determinant
@@ -75,4 +76,37 @@ function hasTrend(intervals: ResolvedInterval[]): boolean {
   }
   const error = Math.sqrt(Math.max(1, dispersion) / information)
   return Math.abs(slope) / error > STANDARD_ERRORS
+}
+
+/** Middles of the intervals, from -1/2 to 1/2. */
+function middleTimes(intervals: readonly ResolvedInterval[]): Float64Array {
+  const times = new Float64Array(intervals.length)
+  let clock = 0
+  for (let i = 0; i < times.length; i++) {
+    clock += intervals[i]!.days
+    times[i] = clock - intervals[i]!.days / 2
+  }
+  for (let i = 0; i < times.length; i++) times[i] = times[i]! / clock - 0.5
+  return times
+}
+
+/** Gradient and information of the log-likelihood in intercept (a) and slope (b). */
+function scores(intervals: readonly ResolvedInterval[], times: Float64Array, intercept: number, slope: number) {
+  let ga = 0
+  let gb = 0
+  let aa = 0
+  let ab = 0
+  let bb = 0
+  for (let i = 0; i < times.length; i++) {
+    const { exposureDays, quantity, weight } = intervals[i]!
+    const time = times[i]!
+    const fitted = weight * exposureDays * Math.exp(intercept + slope * time)
+    const residual = weight * quantity - fitted
+    ga += residual
+    gb += residual * time
+    aa += fitted
+    ab += fitted * time
+    bb += fitted * time * time
+  }
+  return { ga, gb, aa, ab, bb }
 }

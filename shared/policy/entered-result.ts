@@ -32,6 +32,11 @@ export function enteredResult(input: ResolvedInput): PolicyResult {
     protectionDays: input.protectionDays,
     protectionDemand: null,
     achieved: null,
+    fillRate: null,
+    readyRate: null,
+    shelfCarries: null,
+    dataCarry: null,
+    forFewCounts: null,
     textbookNormal: null,
     warnings,
     explanation: [

@@ -2,39 +2,36 @@ import type { DemandLaw } from './demand-law.ts'
 import { figure } from './figure.ts'
 import { countedWastage } from './fitted.ts'
 import type { Fitted } from './fitted.ts'
+import type { OrderQuantity } from './order-quantity.ts'
 import type { ExplanationRow, PolicyResult } from './policy-result.ts'
 import type { ResolvedInput } from './resolve-input.ts'
 
 const row = (label: string, formula: string, value: string): ExplanationRow => ({ label, formula, value })
 const percent = (share: number) => `${figure(share * 100)} %`
+const roughly = (share: number) => `${figure(share * 100, 0)} %`
 
 /**
  * The working of a policy as rows of label, formula with the figures put in, and value; quantities in units of use.
- *
- * `plugInLevel` is the level without the allowance for few counts, where there is one.
+ * Labels are unique within one policy.
  */
 export function explainPolicy(
   input: ResolvedInput,
   fitted: Fitted,
   law: DemandLaw,
   result: PolicyResult,
-  orderFormula: string,
-  plugInLevel: number | null,
+  order: OrderQuantity,
 ): ExplanationRow[] {
   const rows = [...explainDemand(input, fitted, result), ...explainProtection(input, fitted, law)]
   const computed = result.computedReorderPoint!
   rows.push(row('Aim', aimInOdds(input), percent(input.serviceLevel)))
   rows.push(row('Method', fitted.model, result.method))
   rows.push(row('Lowest level that meets the aim', stepAt(input, law, computed), figure(computed)))
-  if (plugInLevel !== null && result.method !== 'poisson' && computed !== plugInLevel)
-    rows.push(
-      row(
-        'Kept for what few counts leave open',
-        `${figure(computed)} − ${figure(plugInLevel)}`,
-        figure(computed - plugInLevel),
-      ),
-    )
-  rows.push(...explainLevels(input, result, orderFormula))
+  const { forFewCounts } = result
+  if (forFewCounts) {
+    const formula = `${figure(computed)} − ${figure(computed - forFewCounts)}`
+    rows.push(row('Kept for what few counts leave open', formula, figure(forFewCounts)))
+  }
+  rows.push(...explainLevels(input, result, order))
   return rows
 }
 
@@ -50,7 +47,11 @@ function explainDemand(input: ResolvedInput, fitted: Fitted, result: PolicyResul
   const rows: ExplanationRow[] = []
   const perDay = figure(fitted.meanPerDay, 3)
   if (!input.intervals) rows.push(row('Use per day', 'taken as known', perDay))
-  else {
+  else if (input.intervals.length === 0) {
+    const { a, b } = input.prior.rate!
+    const formula = `no counts yet; like wards used about ${figure(a)} units / ${figure(b)} days`
+    rows.push(row('Use per day', formula, perDay))
+  } else {
     const units = input.intervals.reduce((sum, interval) => sum + interval.quantity, 0)
     const exposure = input.intervals.reduce((sum, interval) => sum + interval.exposureDays, 0)
     const notes = [
@@ -63,6 +64,11 @@ function explainDemand(input: ResolvedInput, fitted: Fitted, result: PolicyResul
     ].filter(Boolean)
     const tail = notes.length > 0 ? ` (${notes.join('; ')})` : ''
     rows.push(row('Use per day', `${figure(units)} units / ${figure(exposure)} days${tail}`, perDay))
+  }
+  if (fitted.likeWards) {
+    const { own, theirsPerDay, perDay: both } = fitted.likeWards
+    const formula = `your counts weigh ${roughly(own)}, like wards (${figure(theirsPerDay, 3)} a day) ${roughly(1 - Math.round(own * 100) / 100)}`
+    rows.push(row('Where the figures come from', formula, `${figure(both, 3)} a day`))
   }
   if (fitted.variancePerDay !== null && fitted.dispersion !== null) {
     const formula = `variance ${figure(fitted.variancePerDay, 3)} / mean ${perDay}`
@@ -100,7 +106,7 @@ function stepAt(input: ResolvedInput, law: DemandLaw, level: number): string {
   return level > 0 ? `${percent(law.cdf(level - 1))} at ${figure(level - 1)}, ${reached}` : reached
 }
 
-function explainLevels(input: ResolvedInput, result: PolicyResult, orderFormula: string): ExplanationRow[] {
+function explainLevels(input: ResolvedInput, result: PolicyResult, order: OrderQuantity): ExplanationRow[] {
   const rows: ExplanationRow[] = []
   const point = result.reorderPoint!
   if (point !== result.computedReorderPoint) {
@@ -110,7 +116,7 @@ function explainLevels(input: ResolvedInput, result: PolicyResult, orderFormula:
   } else rows.push(row('Reorder point', 'order at or below this', figure(point)))
   const mean = result.protectionDemand!.mean
   rows.push(row('Safety stock', `${figure(point)} − ${figure(mean)}`, figure(result.safetyStock!)))
-  rows.push(row('Order quantity', orderFormula, figure(result.orderQuantity!)))
+  rows.push(...explainOrder(order))
   rows.push(row('Par level', `${figure(point)} + ${figure(result.orderQuantity!)}`, figure(result.parLevel!)))
   const measure = input.serviceMeasure === 'fill' ? 'units served' : 'delivery cycles that do not run out'
   rows.push(row('Expected of this level', `share of ${measure}, an estimate`, percent(result.achieved!)))
@@ -120,4 +126,16 @@ function explainLevels(input: ResolvedInput, result: PolicyResult, orderFormula:
     rows.push(row('Textbook normal', formula, percent(achieved)))
   }
   return rows
+}
+
+const boundLabel: Record<OrderQuantity['bounds'][number]['bound'], string> = {
+  minimum: 'Raised to the smallest order',
+  shelf: 'Kept within the shelf',
+  'shelf-life': 'Kept within the shelf life',
+}
+
+/** The quantity first wanted, then each bound that changed it. */
+function explainOrder(order: OrderQuantity): ExplanationRow[] {
+  const rows = order.bounds.map(({ bound, formula, units }) => row(boundLabel[bound], formula, figure(units)))
+  return [row('Order quantity', order.formula, figure(order.wanted)), ...rows]
 }

@@ -1,18 +1,18 @@
-import { demandMoments } from './demand-moments.ts'
 import type { Fitted } from './fitted.ts'
-import { estimatePoisson, fitGammaPoisson, fitMixture, fitPoisson } from './fit-counts.ts'
+import { estimatePoisson, fitGammaPoisson, fitPoisson } from './fit-counts.ts'
 import { fitDaily } from './fit-daily.ts'
+import { fitMixture } from './fit-mixture.ts'
 import { estimateMoments, fitMoments, fitStudent } from './fit-moments.ts'
 import { refused } from './policy-input-error.ts'
 import type { ResolvedInput, ResolvedInterval } from './resolve-input.ts'
 
 /** Above this mean over the protection interval `auto` takes the t or normal law (statistics, section 0). */
-const LARGE_MEAN = 1000
+export const LARGE_MEAN = 1000
 
 /**
  * Fits the method that was asked for, or the one `auto` chooses, to the input.
  *
- * @returns null where the data say nothing: no interval, or only intervals that ended empty and no pool
+ * @returns null where the data say nothing: no interval or only intervals that ended empty, and no pool
  * @throws {PolicyInputError} when method and data do not fit together
  */
 export function fitMethod(input: ResolvedInput): Fitted | null {
@@ -32,7 +32,7 @@ function fitIntervals(input: ResolvedInput, intervals: ResolvedInterval[]): Fitt
       return fitMoments(input, input.method, estimateMoments(input.method, intervals))
     case 'negative-binomial':
       if (!predictive) return fitMoments(input, input.method, estimateMoments(input.method, intervals))
-      return tells(input, intervals) ? fitMixture(input, intervals) : null
+      return mixtureTells(input, intervals) ? fitMixture(input, intervals) : null
     case 'poisson': {
       if (!tells(input, intervals)) return null
       if (predictive) return fitGammaPoisson(input, intervals)
@@ -44,22 +44,29 @@ function fitIntervals(input: ResolvedInput, intervals: ResolvedInterval[]): Fitt
     case 'empirical':
       return intervals.length > 0 ? fitDaily(input, intervals, input.method) : null
     case 'auto':
-      if (!tells(input, intervals)) return null
+      if (!mixtureTells(input, intervals)) return null
       return wantsStudent(input, intervals) ? fitStudent(input, intervals) : fitMixture(input, intervals)
   }
 }
 
 /** Some interval must have been seen whole; where all ended empty a pool must stand in. */
-function tells(input: ResolvedInput, intervals: ResolvedInterval[]): boolean {
+function tells(input: ResolvedInput, intervals: readonly ResolvedInterval[]): boolean {
   if (intervals.length === 0) return false
   return intervals.some((interval) => !interval.censored) || input.prior.rate !== null
 }
 
+/** Before the first count the mixture can start from like wards, if these were counted. */
+function mixtureTells(input: ResolvedInput, intervals: readonly ResolvedInterval[]): boolean {
+  if (intervals.length === 0) return input.prior.rate !== null && input.prior.rate.b > 0
+  return tells(input, intervals)
+}
+
 function wantsStudent(input: ResolvedInput, intervals: ResolvedInterval[]): boolean {
-  const whole = intervals.filter((interval) => !interval.censored)
-  if (whole.length < 2) return false
+  let whole = 0
+  for (const interval of intervals) if (!interval.censored) whole++
+  if (whole < 2) return false
   if (intervals.some((interval) => !Number.isInteger(interval.quantity))) return true
-  return demandMoments(intervals).meanPerDay * input.protectionExposureDays > LARGE_MEAN
+  return input.moments!.meanPerDay * input.protectionExposureDays > LARGE_MEAN
 }
 
 function fitKnown(input: ResolvedInput): Fitted {

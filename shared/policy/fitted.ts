@@ -18,6 +18,8 @@ export interface Fitted {
   answersFill: boolean
   /** The model with its figures put in, for the explanation. */
   model: string
+  /** With rates of like wards: the share of own counts in the rate, and units per day by them and by both */
+  likeWards?: { own: number; theirsPerDay: number; perDay: number } | null
   lawOver(horizon: Horizon): DemandLaw
 }
 

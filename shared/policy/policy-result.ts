@@ -42,7 +42,7 @@ export interface ExplanationRow {
 /**
  * What `reorderPoint` answers. Units: units of use and days; figures are not rounded but for whole units.
  *
- * `demand` is null with no interval at all; the reorder point is then null too unless a floor is pinned, and the level
+ * `demand` is null with no interval at all and no rate of like wards; the reorder point is then null too unless a floor is pinned, and the level
  * someone entered is used. `variancePerDay` and `dispersion` are null where the data cannot tell (one interval, no use).
  */
 export interface PolicyResult {
@@ -70,6 +70,16 @@ export interface PolicyResult {
   protectionDemand: { mean: number; variance: number } | null
   /** The chosen method's own probability (or fill rate) at `reorderPoint`: an estimate. */
   achieved: number | null
+  /** Share of units served from the shelf at `reorderPoint` and `orderQuantity`; null where the method has no loss. */
+  fillRate: number | null
+  /** Share of time with stock on the shelf, at the same levels; null where the method has no loss. */
+  readyRate: number | null
+  /** The service the shelf can keep where it is too small for the aim (`shelf-cannot-hold`), else null. */
+  shelfCarries: number | null
+  /** Where use is lumpy or comes in runs: the highest aim such counts could confirm without a model, else null. */
+  dataCarry: number | null
+  /** Units of `computedReorderPoint` that more counts would save (or add); null where the method makes no allowance. */
+  forFewCounts: number | null
   /** The plain z-formula on the same data, and what the chosen method gives that level. Null where there is no variance. */
   textbookNormal: { reorderPoint: number; achieved: number } | null
   warnings: PolicyWarning[]

@@ -23,9 +23,10 @@ export function policyWarnings(input: ResolvedInput, fitted: Fitted, changes: Le
   const intervals = input.intervals
   if (intervals) {
     if (!demandSummary(input, fitted).sufficient) found.add('few-intervals')
-    if (intervals.every((interval) => interval.quantity === 0)) found.add('all-zero')
-    if (intervals.every((interval) => interval.censored)) found.add('all-censored')
-    for (const pattern of demandPatterns(intervals)) found.add(pattern)
+    const counted = intervals.length > 0
+    if (counted && intervals.every((interval) => interval.quantity === 0)) found.add('all-zero')
+    if (counted && intervals.every((interval) => interval.censored)) found.add('all-censored')
+    if (input.moments) for (const pattern of demandPatterns(intervals, input.moments)) found.add(pattern)
     if (usesPool(input, fitted)) found.add('pooled')
   }
   if (input.leadTime.observedDays.length === 0) found.add('stated-lead-time')

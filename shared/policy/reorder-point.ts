@@ -1,23 +1,20 @@
-import { integerQuantile } from '#shared/stats/integer-quantile.ts'
-import { normalQuantile } from '#shared/stats/normal-quantile.ts'
-import { levelFor } from './demand-law.ts'
+import { negativeBinomialLaw } from './count-laws.ts'
 import type { DemandLaw } from './demand-law.ts'
-import { demandMoments } from './demand-moments.ts'
+import { demandSummary } from './demand-summary.ts'
 import { enteredResult } from './entered-result.ts'
 import { explainPolicy } from './explain-policy.ts'
 import { fitMethod } from './fit-method.ts'
 import { combinedMoments, countedWastage } from './fitted.ts'
 import type { Fitted, Horizon } from './fitted.ts'
-import { negativeBinomialLaw } from './count-laws.ts'
 import { orderQuantity } from './order-quantity.ts'
-import { refused } from './policy-input-error.ts'
-import { protectionLaw } from './protection-law.ts'
+import { computedLevel, dataCarry, plugInLevel, serviceOf, textbookLevel } from './policy-levels.ts'
 import type { PolicyInput } from './policy-input.ts'
 import type { PolicyResult } from './policy-result.ts'
 import { policyWarnings } from './policy-warnings.ts'
+import { protectionLaw } from './protection-law.ts'
 import { resolveInput } from './resolve-input.ts'
 import type { ResolvedInput } from './resolve-input.ts'
-import { demandSummary } from './demand-summary.ts'
+import { fillRate, readyRate } from './service-rates.ts'
 
 /**
  * The reorder point, order quantity and par level of one bin, with the working.
@@ -27,7 +24,7 @@ import { demandSummary } from './demand-summary.ts'
  * inputs give equal results, so every stored policy can be computed again. Figures are estimates from counts.
  * Units: days and units of use. Formulas: statistics, sections 2 and 4; the input and the result are the interface's.
  *
- * @returns method `entered` with a null demand when there is no interval to learn from
+ * @returns method `entered` where there is nothing to learn from, neither counts nor the rate of like wards
  * @throws {PolicyInputError} naming each field that is unknown, out of range or does not fit the method
  */
 export function reorderPoint(input: PolicyInput): PolicyResult {
@@ -42,6 +39,10 @@ export function reorderPoint(input: PolicyInput): PolicyResult {
   const usePerDay = fitted.meanPerDay + countedWastage(resolved.wastagePerDay, fitted.meanPerDay)
   const order = orderQuantity(resolved, usePerDay, point, (days) => lawOverLife(fitted, days))
   const textbook = textbookLevel(resolved)
+  const plugIn = plugInLevel(resolved, fitted)
+  const cut = held < computed
+  const warnings = policyWarnings(resolved, fitted, { cut, floored: point > held, order: order.warnings })
+  const unsteady = warnings.includes('lumpy') || warnings.includes('autocorrelated')
   const result: PolicyResult = {
     method: fitted.method,
     reorderPoint: point,
@@ -55,15 +56,16 @@ export function reorderPoint(input: PolicyInput): PolicyResult {
     protectionDays: resolved.protectionDays,
     protectionDemand: { mean: law.mean, variance: law.variance },
     achieved: service(point),
+    fillRate: fillRate(law, point, order.units),
+    readyRate: readyRate(law, point, order.units),
+    shelfCarries: cut ? service(held) : null,
+    dataCarry: unsteady ? dataCarry(resolved) : null,
+    forFewCounts: plugIn === null ? null : computed - plugIn,
     textbookNormal: textbook === null ? null : { reorderPoint: textbook, achieved: service(textbook) },
-    warnings: policyWarnings(resolved, fitted, {
-      cut: held < computed,
-      floored: point > held,
-      order: order.warnings,
-    }),
+    warnings,
     explanation: [],
   }
-  result.explanation = explainPolicy(resolved, fitted, law, result, order.formula, plugInLevel(resolved, fitted))
+  result.explanation = explainPolicy(resolved, fitted, law, result, order)
   return result
 }
 
@@ -72,52 +74,10 @@ function shelfLimit(input: ResolvedInput): number {
   return Math.max(0, input.capacity! - input.order.packSize)
 }
 
-/** What a level achieves in the measure asked for. Fill rate: 1 - [L(r) - L(r + Q)]/Q (statistics, 2.3). */
-function serviceOf(input: ResolvedInput, law: DemandLaw): (level: number) => number {
-  if (input.serviceMeasure === 'cycle') return law.cdf
-  const quantity = input.order.quantity!
-  return (level) => 1 - (law.loss!(level) - law.loss!(level + quantity)) / quantity
-}
-
-function computedLevel(input: ResolvedInput, law: DemandLaw, service: (level: number) => number): number {
-  try {
-    if (input.serviceMeasure === 'cycle') return levelFor(law, input.serviceLevel)
-    return integerQuantile(service, input.serviceLevel, law.mean)
-  } catch (error) {
-    if (!(error instanceof RangeError)) throw error
-    throw refused(input.intervals ? '/intervals' : '/demand', 'the figures vary too much for any level to meet the aim')
-  }
-}
-
 /** The shelf life is a fixed stretch of usual activity, whatever the lead time does; daily records become counts. */
 function lawOverLife(fitted: Fitted, days: number): DemandLaw {
   const horizon: Horizon = { days, exposure: days, variance: 0 }
   if (fitted.method !== 'bootstrap' && fitted.method !== 'empirical') return fitted.lawOver(horizon)
   const { mean, variance } = combinedMoments(fitted.meanPerDay, fitted.variancePerDay ?? fitted.meanPerDay, horizon)
   return negativeBinomialLaw(mean, variance)
-}
-
-/** mean + z sd on the plain moments of the same data: shown beside every result for comparison (statistics, 2.2). */
-function textbookLevel(input: ResolvedInput): number | null {
-  const moments = input.intervals ? demandMoments(input.intervals) : input.demand!
-  if (moments.variancePerDay === null) return null
-  const spread = input.leadTime.sdDays * input.exposureRatio
-  const { mean, variance } = combinedMoments(moments.meanPerDay, moments.variancePerDay, {
-    days: input.protectionDays,
-    exposure: input.protectionExposureDays,
-    variance: spread * spread,
-  })
-  const wasted = countedWastage(input.wastagePerDay, moments.meanPerDay) * input.protectionDays
-  const level = mean + wasted + normalQuantile(input.serviceLevel) * Math.sqrt(variance)
-  return Math.max(0, Math.ceil(level - 1e-9))
-}
-
-/** The level the plug-in negative binomial would give: what is above it is the allowance for few counts. */
-function plugInLevel(input: ResolvedInput, fitted: Fitted): number | null {
-  if (fitted.method !== 'negative-binomial-mixture' || fitted.variancePerDay === null) return null
-  if (input.serviceMeasure === 'fill' || input.leadTime.observedDays.length > 0) return null
-  const spread = input.leadTime.sdDays * input.exposureRatio
-  const horizon = { days: input.protectionDays, exposure: input.protectionExposureDays, variance: spread * spread }
-  const { mean, variance } = combinedMoments(Math.max(0, fitted.meanPerDay), fitted.variancePerDay, horizon)
-  return levelFor(negativeBinomialLaw(mean, variance), input.serviceLevel)
 }

@@ -1,4 +1,6 @@
 import type { z } from 'zod'
+import { demandMoments } from './demand-moments.ts'
+import type { DemandMoments } from './demand-moments.ts'
 import { PolicyInputError, refused } from './policy-input-error.ts'
 import { PolicyInputSchema } from './policy-input.ts'
 import type { POLICY_METHODS } from './policy-input.ts'
@@ -16,6 +18,8 @@ export interface ResolvedInterval {
 export interface ResolvedInput {
   /** null when parameters are given as known */
   intervals: ResolvedInterval[] | null
+  /** Plain moments of the intervals, empty endings read as they stand; null without any */
+  moments: DemandMoments | null
   excludedIntervals: number
   demand: { meanPerDay: number; variancePerDay: number } | null
   leadTime: { meanDays: number; sdDays: number; observedDays: number[] }
@@ -72,6 +76,7 @@ export function resolveInput(input: unknown): ResolvedInput {
     throw refused('/leadTime/meanDays', 'a lead time and review period of 0 days leave nothing to spread or to cover')
   return {
     intervals: used,
+    moments: used && used.length > 0 ? demandMoments(used) : null,
     excludedIntervals: (all?.length ?? 0) - (used?.length ?? 0),
     demand: demand && {
       meanPerDay: demand.meanPerDay,

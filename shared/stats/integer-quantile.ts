@@ -1,5 +1,5 @@
 /** A CDF value within 64 machine epsilons of p counts as reached, so that exact ties are not missed (R nmath). */
-const TIE_GUARD = 1 - 64 * Number.EPSILON
+export const TIE_GUARD = 1 - 64 * Number.EPSILON
 
 /**
  * Smallest integer r >= 0 with CDF(r) >= p, by doubling from a first guess and then bisection.

@@ -119,6 +119,53 @@ describe('few and strange data', () => {
   })
 })
 
+describe('before the first count', () => {
+  const prior = { nu0: 8, w0: 3, rate: { a: 6, b: 12 } }
+  const start = { ...base, intervals: [], prior }
+
+  it('starts from like wards', () => {
+    const got = reorderPoint(start)
+    expect(got).toMatchObject({ method: 'negative-binomial-mixture', textbookNormal: null })
+    expect(got.demand).toEqual({
+      ...{ meanPerDay: 0.5, variancePerDay: null, dispersion: null, intervals: 0, days: 0 },
+      ...{ censoredIntervals: 0, excludedIntervals: 0, sufficient: false },
+    })
+    // P a/b = 7 x 6/12 and, at w0, the ratio w0 + P/b.
+    expect(got.protectionDemand!.mean).toBeCloseTo(3.5, 12)
+    expect(got.protectionDemand!.variance).toBeCloseTo(3.5 * (3 + 7 / 12), 12)
+    expect(got.warnings).toEqual(['few-intervals', 'pooled', 'stated-lead-time'])
+    expect(got.explanation).toContainEqual({
+      label: 'Where the figures come from',
+      formula: 'your counts weigh 0 %, like wards (0.5 a day) 100 %',
+      value: '0.5 a day',
+    })
+    expect(reorderPoint({ ...start, method: 'negative-binomial' })).toEqual(got)
+  })
+
+  it('is a negative binomial where the dispersion is known: gamma rates of Poisson use (statistics, 4.4)', () => {
+    // With w = 1 throughout, D ~ NB(size a, probability b/(b + P)); SciPy 1.17.1: nbinom.ppf(0.98, 6, 12/19) = 9.
+    const got = reorderPoint({ ...start, prior: { ...prior, nu0: 1e6, w0: 0.5 } })
+    expect(got.reorderPoint).toBe(9)
+    expect(got.achieved).toBeCloseTo(0.9815877, 7)
+  })
+
+  it('comes close to a first count of next to nothing', () => {
+    const glimpse = reorderPoint({ ...start, intervals: [{ days: 1e-6, quantity: 0 }] })
+    expect(glimpse.reorderPoint).toBe(reorderPoint(start).reorderPoint)
+    expect(glimpse.achieved).toBeCloseTo(reorderPoint(start).achieved!, 5)
+  })
+
+  it('stays with the entered level where like wards tell no rate, or were never counted', () => {
+    for (const rate of [null, { a: 0.5, b: 0 }])
+      expect(reorderPoint({ ...start, prior: { ...prior, rate } })).toMatchObject({ method: 'entered', demand: null })
+  })
+
+  it('says how much the first counts weigh: (T/w)/(b + T/w), 7 days against 12 at w = 3', () => {
+    const rows = reorderPoint({ ...start, intervals: [week(9)] }).explanation
+    expect(rows.find(({ label }) => label === 'Where the figures come from')!.formula).toContain('weigh 16 %')
+  })
+})
+
 describe('floor, shelf and order quantity', () => {
   const known = (more: Partial<PolicyInput>) =>
     reorderPoint({
