@@ -32,14 +32,21 @@ export async function updateCalendarRow(tx: Tx, id: number, set: Partial<Calenda
   if (Object.keys(set).length) await tx.update(calendars).set(set).where(eq(calendars.id, id))
 }
 
-/** Days of some calendars, or of all that are in use, by date. */
-export async function listDays(db: Reader, calendarIds: number[] | null): Promise<CalendarDayRow[]> {
-  if (calendarIds && calendarIds.length === 0) return []
+/** Days of some calendars, by date. */
+export async function listDays(db: Reader, calendarIds: number[]): Promise<CalendarDayRow[]> {
+  if (calendarIds.length === 0) return []
   return db
     .select()
     .from(calendarDays)
-    .where(calendarIds ? inArray(calendarDays.calendarId, calendarIds) : undefined)
+    .where(inArray(calendarDays.calendarId, calendarIds))
     .orderBy(asc(calendarDays.calendarId), asc(calendarDays.date))
+}
+
+/** Every closed day, and which calendar holds where no other is named. */
+export async function listClosedDays(db: Reader) {
+  const days = await db.select().from(calendarDays)
+  const [hospital] = await db.select({ calendarId: hospitals.calendarId }).from(hospitals).where(eq(hospitals.id, 1))
+  return { days, hospitalCalendarId: hospital?.calendarId ?? null }
 }
 
 export async function insertDays(tx: Tx, calendarId: number, days: { date: string; name: string }[]): Promise<void> {
