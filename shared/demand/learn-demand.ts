@@ -8,6 +8,7 @@ import { withExtraUnits } from './extra-units.ts'
 import { forget } from './forget.ts'
 import { mergeNegatives } from './merge-negatives.ts'
 import { mergeOverflow } from './merge-overflow.ts'
+import { outliers, type Outlier } from './outliers.ts'
 import { asPolicyIntervals, wastageRate } from './policy-intervals.ts'
 
 const dayMs = 86_400_000
@@ -21,6 +22,8 @@ export interface LearnedDemand {
   wastagePerDay: number
   /** Units used on a usual day, planned extra units apart: turns extra units ahead into days. Null: nothing learned. */
   basePerDay: number | null
+  /** Intervals to ask about; they are used all the same. */
+  outliers: Outlier[]
   /** Days to expect between counts. */
   rhythmDays: number
   /** Epoch ms and id of the last standing count. */
@@ -48,6 +51,7 @@ export function learnDemand(
     forPolicy: asPolicyIntervals(merged.intervals),
     wastagePerDay: wastageRate(intervals),
     basePerDay: cut.basePerDay,
+    outliers: outliers(merged.intervals),
     rhythmDays: countRhythm(gapsOf(intervals), options.plannedRhythmDays),
     lastCount: last ? { at: last.effectiveAt, opId: last.opId } : null,
   }

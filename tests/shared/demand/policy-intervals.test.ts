@@ -1,30 +1,8 @@
 import { describe, expect, it } from 'vitest'
 import { countRhythm } from '#shared/demand/count-rhythm.ts'
-import type { DemandInterval } from '#shared/demand/demand-events.ts'
 import { forget, halfLifeDays } from '#shared/demand/forget.ts'
 import { policyIntervals, wastageRate } from '#shared/demand/policy-intervals.ts'
-
-const DAY = 86_400_000
-
-/** A chain of weekly intervals with these uses; changes are laid over single ones. */
-const chain = (uses: number[], changes: Record<number, Partial<DemandInterval>> = {}, days = 7): DemandInterval[] =>
-  uses.map((quantity, i) => ({
-    openingOpId: `c${i}`,
-    closingOpId: `c${i + 1}`,
-    openedAt: i * days * DAY,
-    closedAt: (i + 1) * days * DAY,
-    days,
-    stockedFrom: i * days * DAY,
-    exposureDays: days,
-    quantity,
-    extraUnits: 0,
-    censored: false,
-    weight: 1,
-    used: true,
-    why: null,
-    wastage: 0,
-    ...changes[i],
-  }))
+import { weeks as chain } from './weeks.ts'
 
 describe('negative use', () => {
   it('is merged with the neighbour that holds the other half of the miscount', () => {
