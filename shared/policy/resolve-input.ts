@@ -67,7 +67,7 @@ export function resolveInput(input: unknown): ResolvedInput {
   if (!intervals && !demand) throw refused('/intervals', 'give intervals, or demand with a mean per day')
 
   const all = intervals?.map(resolveInterval) ?? null
-  const used = all?.filter((interval) => interval.weight > 0) ?? null
+  const used = all ? rescaled(all.filter((interval) => interval.weight > 0)) : null
   const sdDays = data.leadTime.sdDays ?? 0
   const reviewPeriodDays = data.reviewPeriodDays ?? 0
   const protectionDays = data.leadTime.meanDays + reviewPeriodDays
@@ -108,6 +108,13 @@ function resolveInterval(interval: NonNullable<Parsed['intervals']>[number]): Re
     censored: interval.censored ?? false,
     weight: interval.weight ?? 1,
   }
+}
+
+/** Only the proportions of weights count; so small that their squares would vanish, they are raised together. */
+function rescaled(intervals: ResolvedInterval[]): ResolvedInterval[] {
+  const largest = intervals.reduce((most, { weight }) => Math.max(most, weight), 0)
+  if (largest === 0 || largest > 1e-100) return intervals
+  return intervals.map((interval) => ({ ...interval, weight: interval.weight / largest }))
 }
 
 function resolveOrder(order: Parsed['order']): ResolvedInput['order'] {
