@@ -265,6 +265,8 @@ describe('age', () => {
   it('over two years leaves an interval out', () => {
     const got = intervalsOf([0, 'count', 30], [7, 'count', 20], [700, 'count', 10], [740, 'count', 5])
     expect(got.map(({ why }) => why)).toEqual(['too-old', null, null])
+    // 730 days exactly are not over it.
+    expect(intervalsOf([0, 'count', 30], [7, 'count', 20], [737, 'count', 10])[0]!.used).toBe(true)
   })
 })
 
