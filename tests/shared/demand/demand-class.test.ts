@@ -1,7 +1,7 @@
 import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { demandClass, demandShape } from '#shared/demand/demand-class.ts'
-import { demandPatterns } from '#shared/policy/demand-patterns.ts'
+import { reorderPoint } from '#shared/policy/reorder-point.ts'
 
 const periods = (...uses: number[]) => uses.map((quantity) => ({ exposureDays: 7, quantity }))
 
@@ -45,8 +45,9 @@ describe('the class of a demand', () => {
     const interval = fc.record({ days: fc.integer({ min: 1, max: 20 }), quantity: fc.integer({ min: -2, max: 9 }) })
     fc.assert(
       fc.property(fc.array(interval, { minLength: 1, maxLength: 10 }), (rows) => {
-        const intervals = rows.map((r) => ({ ...r, exposureDays: r.days, censored: false, weight: 1 }))
-        expect(demandClass(intervals) === 'lumpy').toBe(demandPatterns(intervals).includes('lumpy'))
+        const intervals = rows.map((row) => ({ ...row, exposureDays: row.days }))
+        const { warnings } = reorderPoint({ intervals, leadTime: { meanDays: 3 }, serviceLevel: 0.98 })
+        expect(demandClass(intervals) === 'lumpy').toBe(warnings.includes('lumpy'))
       }),
     )
   })
