@@ -61,6 +61,16 @@ export interface PlaceTimes {
   countDays: string
 }
 
+export const placeTimes = (
+  closed: ClosedDays,
+  supplier: { calendarId: number | null } | null,
+  place: { wardCalendarId: number | null; countDays?: string },
+): PlaceTimes => ({
+  supplier: closed.ofSupplier(supplier),
+  ward: closed.ofWard({ calendarId: place.wardCalendarId }),
+  countDays: place.countDays ?? '',
+})
+
 /**
  * A supplier's calendar as one place meets it; without a cut-off it takes orders at every moment. Closed days apply to
  * dated slots only: a supplier without a cut-off states its time in days, come what may.

@@ -1,4 +1,4 @@
-import { and, asc, count, eq, inArray, isNotNull, isNull } from 'drizzle-orm'
+import { and, asc, eq, inArray, isNotNull, isNull } from 'drizzle-orm'
 import type { Reader, Tx } from '../db/client.ts'
 import { calendarDays, calendars, hospitals, suppliers, wards } from './catalogue.tables.ts'
 
@@ -58,20 +58,21 @@ export async function deleteDays(tx: Tx, calendarId: number): Promise<void> {
   await tx.delete(calendarDays).where(eq(calendarDays.calendarId, calendarId))
 }
 
-/** Who names each calendar: suppliers and wards in use, and the hospital. */
-export async function countUses(db: Reader) {
-  const bySupplier = await db
-    .select({ calendarId: suppliers.calendarId, n: count() })
-    .from(suppliers)
-    .where(and(isNotNull(suppliers.calendarId), isNull(suppliers.retiredAt)))
-    .groupBy(suppliers.calendarId)
-  const byWard = await db
-    .select({ calendarId: wards.calendarId, n: count() })
-    .from(wards)
-    .where(and(isNotNull(wards.calendarId), isNull(wards.retiredAt)))
-    .groupBy(wards.calendarId)
-  const [hospital] = await db.select({ calendarId: hospitals.calendarId }).from(hospitals).where(eq(hospitals.id, 1))
-  const counted = (rows: { calendarId: number | null; n: number }[]): Map<number, number> =>
-    new Map(rows.flatMap((r) => (r.calendarId === null ? [] : [[r.calendarId, r.n] as const])))
-  return { suppliers: counted(bySupplier), wards: counted(byWard), hospital: hospital?.calendarId ?? null }
+/** Who goes by which calendar: the hospital, and suppliers and wards in use that name one. */
+export async function listUses(db: Reader) {
+  const [hospital] = await db
+    .select({ calendarId: hospitals.calendarId, timeZone: hospitals.timeZone })
+    .from(hospitals)
+    .where(eq(hospitals.id, 1))
+  return {
+    hospital: hospital ?? { calendarId: null, timeZone: 'utc' },
+    suppliers: await db
+      .select({ id: suppliers.id, calendarId: suppliers.calendarId })
+      .from(suppliers)
+      .where(and(isNotNull(suppliers.calendarId), isNull(suppliers.retiredAt))),
+    wards: await db
+      .select({ id: wards.id, calendarId: wards.calendarId })
+      .from(wards)
+      .where(and(isNotNull(wards.calendarId), isNull(wards.retiredAt))),
+  }
 }

@@ -1,8 +1,10 @@
+import * as k from '#shared/contracts/calendars.ts'
 import * as c from '#shared/contracts/catalogue.ts'
 import * as h from '#shared/contracts/hospital.ts'
 import { listBins, momentOf, viewBin } from '../counts/bin-view.service.ts'
 import type { Routes } from '../http/endpoint.ts'
 import * as bins from './bins.service.ts'
+import * as calendars from './calendars.service.ts'
 import * as hospital from './hospital.service.ts'
 import * as items from './items.service.ts'
 import * as places from './places.service.ts'
@@ -27,6 +29,16 @@ export function catalogueRoutes(routes: Routes): void {
   routes.write(c.createSupplier, ({ tx, clock, actor, body }) => places.createSupplier(tx, clock, actor.id, body))
   routes.write(c.updateSupplier, ({ tx, clock, actor, params, body }) =>
     places.updateSupplier(tx, clock, actor, Number(params.id), body),
+  )
+
+  routes.read(k.listCalendars, ({ tx, clock, query }) => calendars.listCalendars(tx, clock, query))
+  routes.read(k.readCalendar, ({ tx, clock, params }) => calendars.readCalendar(tx, clock, Number(params.id)))
+  routes.write(k.createCalendar, ({ tx, clock, actor, body }) => calendars.createCalendar(tx, clock, actor.id, body))
+  routes.write(k.updateCalendar, ({ tx, clock, actor, params, body }) =>
+    calendars.updateCalendar(tx, clock, actor.id, Number(params.id), body),
+  )
+  routes.write(k.importCalendar, ({ tx, clock, actor, params, body }) =>
+    calendars.importCalendar(tx, clock, actor.id, Number(params.id), body.text),
   )
 
   routes.read(c.listItems, ({ tx, query }) => items.listItems(tx, query))

@@ -9,6 +9,7 @@ import { enqueue } from '../jobs/jobs.service.ts'
 import { classLevels, setClassLevels } from '../review/classes.service.ts'
 import { checkCalendar } from './calendars.service.ts'
 import { findHospital, insertHospital, updateHospitalRow } from './hospital.repository.ts'
+import { checkReach } from './reach.service.ts'
 
 /** The organisation's settings. @throws {Problem} not-ready before they are made */
 export async function readHospital(db: Reader): Promise<Hospital> {
@@ -64,6 +65,7 @@ export async function updateHospital(tx: Tx, clock: Clock, actor: Actor, change:
   const after = { ...before, ...change }
   check(after, change)
   await updateHospitalRow(tx, await columnsOf(tx, after))
+  if (after.calendarId !== before.calendarId) await checkReach(tx, clock.now(), '/calendarId')
   await setClassLevels(tx, after.levels)
   await audit(tx, {
     at: clock.now(),

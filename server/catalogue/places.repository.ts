@@ -1,7 +1,7 @@
-import { and, asc, avg, count, eq, inArray, isNotNull, isNull, like, or, sql, type SQL } from 'drizzle-orm'
+import { and, asc, avg, count, eq, inArray, isNotNull, isNull, like, min, or, sql, type SQL } from 'drizzle-orm'
 import type { Reader, Tx } from '../db/client.ts'
 import { leadTimeObservations } from '../policy/policy.tables.ts'
-import { bins, rooms, suppliers, wards } from './catalogue.tables.ts'
+import { bins, hospitals, rooms, suppliers, wards } from './catalogue.tables.ts'
 
 export interface ListFilter {
   q?: string
@@ -172,4 +172,24 @@ export async function insertSupplier(tx: Tx, row: typeof suppliers.$inferInsert)
 
 export async function updateSupplierRow(tx: Tx, id: number, set: Partial<SupplierRow>): Promise<void> {
   if (Object.keys(set).length) await tx.update(suppliers).set(set).where(eq(suppliers.id, id))
+}
+
+// Calendars -------------------------------------------------------------------------------------------------------
+/** Everybody in use who goes by closed days: suppliers, and each kind of room by its ward's calendar and counting days. */
+export async function listReach(db: Reader) {
+  const [hospital] = await db.select({ timeZone: hospitals.timeZone }).from(hospitals).where(eq(hospitals.id, 1))
+  return {
+    timeZone: hospital?.timeZone ?? 'utc',
+    suppliers: await db.select().from(suppliers).where(isNull(suppliers.retiredAt)),
+    places: await db
+      .select({
+        wardCalendarId: wards.calendarId,
+        countDays: rooms.countDays,
+        roomName: min(rooms.name).mapWith(String),
+      })
+      .from(rooms)
+      .innerJoin(wards, eq(wards.id, rooms.wardId))
+      .where(isNull(rooms.retiredAt))
+      .groupBy(wards.calendarId, rooms.countDays),
+  }
 }

@@ -11,6 +11,7 @@ import { checkCalendar } from './calendars.service.ts'
 import { readHospital } from './hospital.service.ts'
 import { liveBinsOfSuppliers } from './items.repository.ts'
 import * as repo from './places.repository.ts'
+import { checkReach } from './reach.service.ts'
 
 export interface ListQuery {
   page: number
@@ -113,8 +114,10 @@ export async function updateWard(
     after: input,
   })
   const after = (await repo.findWard(tx, id))!
-  if (after.calendarId !== before.calendarId)
+  if (after.calendarId !== before.calendarId) {
+    await checkReach(tx, clock.now(), '/calendarId')
     await touchBins(tx, clock.now(), await repo.liveBinsOfWards(tx, [id]), 'calendar')
+  }
   return toWard(after)
 }
 
@@ -173,6 +176,7 @@ export async function createRoom(tx: Tx, clock: Clock, actorId: number, input: R
   const wardId = await checkWard(tx, input.wardId)
   const id = await repo.insertRoom(tx, { ...input, wardId, retiredAt: null }).catch(codeTakenProblem)
   await startRoom(tx, id)
+  if (input.countDays) await checkReach(tx, clock.now(), '/countDays')
   await audit(tx, {
     at: clock.now(),
     userId: actorId,
@@ -201,6 +205,7 @@ export async function updateRoom(
     ...(wardId === undefined ? {} : { wardId: await checkWard(tx, wardId) }),
   }
   await repo.updateRoomRow(tx, id, set).catch(codeTakenProblem)
+  if (input.countDays || wardId) await checkReach(tx, clock.now(), input.countDays ? '/countDays' : '/wardId')
   await audit(tx, {
     at: clock.now(),
     userId: actor.id,
@@ -254,6 +259,7 @@ export async function listSuppliers(db: Reader, query: ListQuery) {
 export async function createSupplier(tx: Tx, clock: Clock, actorId: number, input: SupplierFields): Promise<Supplier> {
   const calendarId = await checkCalendar(tx, input.calendarId)
   const id = await repo.insertSupplier(tx, { ...input, calendarId, retiredAt: null }).catch(codeTakenProblem)
+  await checkReach(tx, clock.now(), calendarId === null ? '/orderDays' : '/calendarId')
   await audit(tx, {
     at: clock.now(),
     userId: actorId,
@@ -280,6 +286,7 @@ export async function updateSupplier(
   const { calendarId: _named, ...rest } = input
   const set = { ...changeOf(rest, clock.now()), ...(await calendarOfInput(tx, input)) }
   await repo.updateSupplierRow(tx, id, set).catch(codeTakenProblem)
+  await checkReach(tx, clock.now(), input.calendarId ? '/calendarId' : '/orderDays')
   await audit(tx, {
     at: clock.now(),
     userId: actor.id,

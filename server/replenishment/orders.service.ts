@@ -4,7 +4,7 @@ import { fieldProblem, problem } from '#shared/contracts/problems.ts'
 import { formatShelfCode } from '#shared/barcode/shelf-code.ts'
 import { openUnitsOf, orderStateOf } from '#shared/replenishment/order-state.ts'
 import { audit } from '../audit/audit.service.ts'
-import { arrivalIfOrderedAt } from '../catalogue/calendar.service.ts'
+import { arrivalIfOrderedAt, closedDays, placeTimes } from '../catalogue/calendar.service.ts'
 import { readHospital } from '../catalogue/hospital.service.ts'
 import { supplierRow } from '../catalogue/places.service.ts'
 import type { Clock } from '../clock.ts'
@@ -241,7 +241,7 @@ export async function sendOrder(tx: Tx, clock: Clock, actor: Actor, id: number):
   if (!supplier) throw problem('not-found')
   const local = DateTime.fromJSDate(now, { zone: hospital.timeZone })
   const number = `B${local.toFormat('yy')}-${String(await repo.drawNumber(tx, local.year)).padStart(5, '0')}`
-  const arrives = arrivalIfOrderedAt(supplier, hospital.timeZone, now)
+  const arrives = await firstArrival(tx, id, supplier, hospital.timeZone, now)
   const expectedOn = draft.expectedOn ?? DateTime.fromJSDate(arrives, { zone: hospital.timeZone }).toISODate()
   await repo.updateOrder(tx, id, { state: 'sent', number, sentAt: now, sentBy: actor.id, expectedOn })
   await repo.releaseBins(tx, id)
@@ -270,6 +270,21 @@ export async function sendOrder(tx: Tx, clock: Clock, actor: Actor, id: number):
     null,
   )
   return order
+}
+
+/** When the first of an order's wards gets it: one that is closed takes its share later. */
+async function firstArrival(
+  tx: Tx,
+  orderId: number,
+  supplier: NonNullable<Awaited<ReturnType<typeof supplierRow>>>,
+  timeZone: string,
+  now: Date,
+): Promise<Date> {
+  const closed = await closedDays(tx)
+  const arrivals = (await repo.listWardsOfOrder(tx, orderId)).map((ward) =>
+    arrivalIfOrderedAt(supplier, timeZone, now, placeTimes(closed, supplier, ward)).getTime(),
+  )
+  return new Date(Math.min(...arrivals))
 }
 
 async function lockUnderWay(tx: Tx, id: number): Promise<Order> {

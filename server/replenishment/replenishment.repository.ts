@@ -1,7 +1,7 @@
 import { and, asc, desc, eq, inArray, isNull, sql } from 'drizzle-orm'
 import { alias } from 'drizzle-orm/mysql-core'
 import type { OrderState } from '#shared/contracts/replenishment.ts'
-import { bins, items, rooms, suppliers, supplyAgreements } from '../catalogue/catalogue.tables.ts'
+import { bins, items, rooms, suppliers, supplyAgreements, wards } from '../catalogue/catalogue.tables.ts'
 import { movements } from '../counts/counts.tables.ts'
 import type { Reader, Tx } from '../db/client.ts'
 import { draftBins, orderLines, orderNumbers, orders } from './replenishment.tables.ts'
@@ -113,6 +113,17 @@ export async function listLines(db: Reader, orderIds: number[]) {
     .orderBy(asc(orderLines.id))
 }
 export type LineRow = Awaited<ReturnType<typeof listLines>>[number]
+
+/** Calendars of the wards that an order is for. */
+export async function listWardsOfOrder(db: Reader, orderId: number) {
+  return db
+    .selectDistinct({ wardCalendarId: wards.calendarId })
+    .from(orderLines)
+    .innerJoin(bins, eq(bins.id, orderLines.binId))
+    .innerJoin(rooms, eq(rooms.id, bins.roomId))
+    .innerJoin(wards, eq(wards.id, rooms.wardId))
+    .where(eq(orderLines.orderId, orderId))
+}
 
 /** Who supplies each item first. */
 export async function listPreferredSupply(db: Reader, itemIds: number[]) {

@@ -2,7 +2,7 @@ import { DateTime } from 'luxon'
 import type { WorklistRow } from '#shared/contracts/replenishment.ts'
 import { runOutProbability, runOutRange, type RunOutInput } from '#shared/replenishment/run-out.ts'
 import { suggestedPacks } from '#shared/replenishment/suggested-packs.ts'
-import { orderWindow } from '../catalogue/calendar.service.ts'
+import { closedDays, orderWindow, placeTimes } from '../catalogue/calendar.service.ts'
 import { readHospital } from '../catalogue/hospital.service.ts'
 import type { Clock } from '../clock.ts'
 import { momentOf, pageOf, viewBins, type BinView } from '../counts/bin-view.service.ts'
@@ -37,9 +37,10 @@ export async function outlookOf(db: Reader, context: Context, views: BinView[]):
   const itemIds = [...new Set(views.flatMap((v) => (v.row.itemId === null ? [] : [v.row.itemId])))]
   const supplies = new Map((await preferredSupply(db, itemIds)).map((s) => [s.itemId, s]))
   const demands = await demandOf(db)
+  const windowOf = await windows(db, context)
   return views.map((view) => {
     const supply = view.row.itemId === null ? null : (supplies.get(view.row.itemId) ?? null)
-    const window = supply ? orderWindow(supply.supplier, context.timeZone, context.now) : null
+    const window = supply ? windowOf(supply.supplier, view) : null
     const onItsWay = arrivalUnderWay(view, context)
     const nextArrival = onItsWay ?? window?.firstArrival ?? null
     const demand = demands.get(view.row.id)
@@ -57,6 +58,19 @@ export async function outlookOf(db: Reader, context: Context, views: BinView[]):
       outBy: { early: localDay(range.early), late: localDay(range.late) },
     }
   })
+}
+
+/** Next order and its arrival; places of one ward share those of a supplier. */
+async function windows(db: Reader, context: Context) {
+  const closed = await closedDays(db)
+  const known = new Map<string, ReturnType<typeof orderWindow>>()
+  return (supplier: Supply['supplier'], view: BinView): ReturnType<typeof orderWindow> => {
+    const key = `${supplier.id} ${view.row.wardCalendarId}`
+    const window =
+      known.get(key) ?? orderWindow(supplier, context.timeZone, context.now, placeTimes(closed, supplier, view.row))
+    known.set(key, window)
+    return window
+  }
 }
 
 /** The day of the earliest believed delivery, at the usual hour of deliveries. */
