@@ -46,7 +46,9 @@ export async function listBinRows(db: Reader, filter: BinFilter) {
       wardId: wards.id,
       wardName: wards.name,
       wardKind: wards.kind,
+      wardCalendarId: wards.calendarId,
       countEveryDays: rooms.countEveryDays,
+      countDays: rooms.countDays,
       bay: bins.bay,
       shelf: bins.shelf,
       walkOrder: bins.walkOrder,
@@ -73,6 +75,8 @@ export async function listBinRows(db: Reader, filter: BinFilter) {
       reorderPoint: policies.reorderPoint,
       parLevel: policies.parLevel,
       meanPerDay: sql<number | null>`json_value(${policies.result}, '$.demand.meanPerDay')`,
+      closed: sql<string | null>`json_extract(${policies.facts}, '$.closed')`,
+      gap: sql<string | null>`json_extract(${policies.facts}, '$.gap')`,
     })
     .from(bins)
     .innerJoin(rooms, eq(rooms.id, bins.roomId))

@@ -67,6 +67,7 @@ function toView(row: BinRow, openLines: OpenLine[], overflow: OverflowPlace[], m
   const onHand = Math.max(0, raw) + overflow.reduce((sum, o) => sum + Math.max(0, o.onHand), 0)
   const isOverflow = row.overflowOf !== null
   const reorderPoint = isOverflow ? null : row.policyId === null ? row.enteredReorderPoint : row.reorderPoint
+  const closed = closureAt(row.closed, moment.now)
   const facts: BinFacts = {
     kind: row.kind,
     isOverflow,
@@ -82,9 +83,38 @@ function toView(row: BinRow, openLines: OpenLine[], overflow: OverflowPlace[], m
     reorderPoint,
     meanPerDay: row.meanPerDay === null ? null : Number(row.meanPerDay),
     countEveryDays: row.countEveryDays,
+    isQuiet: closed !== null && (closed.flagsFrom === null || moment.now < Date.parse(closed.flagsFrom)),
   }
   const parLevel = isOverflow ? null : row.policyId === null ? row.enteredPar : row.parLevel
-  return { bin: toBin(row, facts, parLevel, believed, arrived, raw, moment.now), row, openLines: mine, facts, overflow }
+  const bin = toBin(row, facts, parLevel, believed, arrived, raw, moment.now)
+  bin.closed = closed && { from: closed.from, until: closed.until }
+  bin.gap = gapAt(row.gap, moment.now)
+  return { bin, row, openLines: mine, facts, overflow }
+}
+
+interface Closure {
+  from: string
+  until: string | null
+  /** From then on flags serve the reopening; null: not while it is shut. */
+  flagsFrom: string | null
+}
+
+/** JSON columns come back as text or as what they hold, by the driver's knowledge of the column. */
+const parsed = <T>(value: unknown): T | null =>
+  (typeof value === 'string' ? (JSON.parse(value) as T | null) : (value as T | null)) ?? null
+
+/** The planned closure that is on at a moment. */
+function closureAt(stored: unknown, now: number): Closure | null {
+  const closed = parsed<Closure>(stored)
+  const isOn =
+    closed !== null && Date.parse(closed.from) <= now && (closed.until === null || now < Date.parse(closed.until))
+  return isOn ? closed : null
+}
+
+/** The level to reach before a holiday gap, until the last order before it. */
+function gapAt(stored: unknown, now: number): Bin['gap'] {
+  const gap = parsed<NonNullable<Bin['gap']>>(stored)
+  return gap !== null && now <= Date.parse(gap.orderBy) ? gap : null
 }
 
 function toBin(
@@ -140,6 +170,8 @@ function toBin(
         .map((l) => l.expectedOn)
         .filter((d): d is string => d !== null)
         .sort()[0] ?? null,
+    closed: null,
+    gap: null,
     recordsDisagree: raw < 0,
     enteredReorderPoint: row.enteredReorderPoint,
     enteredPar: row.enteredPar,

@@ -1,7 +1,7 @@
 import type { Clock } from '../clock.ts'
 import { momentOf, viewBins } from '../counts/bin-view.service.ts'
 import type { Db } from '../db/client.ts'
-import { newestRun, recomputeAll } from '../policy/policy.service.ts'
+import { newestRun, recomputeAll } from '../policy/runs.service.ts'
 import { dropPolicyJobs } from './demo.repository.ts'
 
 const dayMs = 86_400_000

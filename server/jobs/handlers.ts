@@ -5,12 +5,16 @@ import { hospitalExists, readHospital } from '../catalogue/hospital.service.ts'
 import type { Clock } from '../clock.ts'
 import type { Db } from '../db/client.ts'
 import { inTransaction } from '../db/transaction.ts'
-import { newestRun, recompute, recomputeAll } from '../policy/policy.service.ts'
+import { recompute } from '../policy/policy.service.ts'
+import { newestRun, recomputeAll } from '../policy/runs.service.ts'
 import { enqueue, type JobHandler } from './jobs.service.ts'
 
 const cause = z.enum(causesOfChange)
 const OneBin = z.object({ binId: z.number().int(), cause })
 const AllBins = z.object({ cause })
+
+/** A run cut short this long ago at most is gone on with; an older one is begun anew. */
+const resumeMs = 12 * 3_600_000
 
 /** What runs behind the answers, by kind. */
 export function jobHandlers(db: Db, clock: Clock): Record<string, JobHandler> {
@@ -20,7 +24,8 @@ export function jobHandlers(db: Db, clock: Clock): Record<string, JobHandler> {
       await inTransaction(db, (tx) => recompute(tx, clock, job.binId, job.cause))
     },
     'policy-all': async (payload) => {
-      await recomputeAll(db, clock, AllBins.parse(payload).cause)
+      const resumeSince = new Date(clock.now().getTime() - resumeMs)
+      await recomputeAll(db, clock, AllBins.parse(payload).cause, { resumeSince })
     },
   }
 }

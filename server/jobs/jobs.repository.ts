@@ -35,6 +35,13 @@ export async function leaseJob(db: Db, owner: string, now: Date, leaseMs: number
   return row ?? null
 }
 
+export async function renewLease(db: Db, id: number, owner: string, leaseUntil: Date): Promise<void> {
+  await db
+    .update(jobs)
+    .set({ leaseUntil })
+    .where(and(eq(jobs.id, id), eq(jobs.leaseOwner, owner)))
+}
+
 export async function deleteJob(db: Db, id: number): Promise<void> {
   await db.delete(jobs).where(eq(jobs.id, id))
 }

@@ -1,7 +1,7 @@
 import { randomUUID } from 'node:crypto'
 import type { Clock } from '../clock.ts'
 import type { Db, Reader, Tx } from '../db/client.ts'
-import { deleteJob, failJob, insertJob, leaseJob, listStuck } from './jobs.repository.ts'
+import { deleteJob, failJob, insertJob, leaseJob, listStuck, renewLease } from './jobs.repository.ts'
 
 export type JobHandler = (payload: unknown) => Promise<void>
 
@@ -17,6 +17,7 @@ export async function enqueue(
 }
 
 const leaseMs = 120_000
+const renewMs = 30_000
 
 /** Runs one due job. @returns whether there was one */
 export async function runOne(
@@ -27,6 +28,7 @@ export async function runOne(
 ): Promise<boolean> {
   const job = await leaseJob(db, owner, clock.now(), leaseMs)
   if (!job) return false
+  const renewal = setInterval(() => void keepLease(db, clock, job.id, owner), renewMs)
   try {
     const handler = handlers[job.kind]
     if (!handler) throw new Error(`no handler for ${job.kind}`)
@@ -39,8 +41,19 @@ export async function runOne(
       runAt: new Date(clock.now().getTime() + wait),
       lastError: String(error instanceof Error ? error.message : error).slice(0, 300),
     })
+  } finally {
+    clearInterval(renewal)
   }
   return true
+}
+
+/** A long run keeps its job for as long as it lives; killed, it gives the job up within the lease. */
+async function keepLease(db: Db, clock: Clock, id: number, owner: string): Promise<void> {
+  try {
+    await renewLease(db, id, owner, new Date(clock.now().getTime() + leaseMs))
+  } catch {
+    // The next renewal comes well before the lease ends.
+  }
 }
 
 /** Runs everything that is due; for tests and the end of a bulk load. */

@@ -1,7 +1,10 @@
-import { and, asc, desc, eq, gt, inArray, lte, max, sql } from 'drizzle-orm'
+import { and, asc, desc, eq, gt, gte, inArray, isNull, lte, max, sql, type SQL } from 'drizzle-orm'
 import { items, supplyAgreements, suppliers } from '../catalogue/catalogue.tables.ts'
 import type { Db, Reader, Tx } from '../db/client.ts'
-import { demandIntervals, policies, policyRuns } from './policy.tables.ts'
+import { demandIntervals, leadTimeObservations, policies, policyRuns } from './policy.tables.ts'
+
+/** Of one supplier; older ones tell of another time. */
+const delaysKept = 300
 
 export type PolicyRow = typeof policies.$inferSelect
 export type IntervalRow = typeof demandIntervals.$inferSelect
@@ -27,12 +30,42 @@ export async function listResults(db: Reader) {
     .where(eq(policies.isCurrent, true))
 }
 
-export async function insertPolicy(tx: Tx, row: typeof policies.$inferInsert): Promise<void> {
+/** Bins with open questions about their use. */
+export async function listAsked(db: Reader) {
+  const questions = sql<number>`coalesce(json_length(${policies.facts}, '$.questions'), 0)`.mapWith(Number)
+  return db
+    .select({ binId: policies.binId, questions })
+    .from(policies)
+    .where(and(eq(policies.isCurrent, true), gt(questions, 0)))
+}
+
+/** What the figures in force of each bin come to. */
+export async function listFigures(db: Reader) {
+  const figure = (table: SQL) => sql<number | null>`${table}`.mapWith(Number)
+  return db
+    .select({
+      binId: policies.binId,
+      orderQuantity: policies.orderQuantity,
+      sure: figure(sql`json_value(${policies.facts}, '$.sure')`),
+      meanPerDay: figure(sql`json_value(${policies.result}, '$.demand.meanPerDay')`),
+    })
+    .from(policies)
+    .where(eq(policies.isCurrent, true))
+}
+
+export async function insertPolicy(tx: Tx, row: typeof policies.$inferInsert): Promise<number> {
   await tx
     .update(policies)
     .set({ isCurrent: false })
     .where(and(eq(policies.binId, row.binId), eq(policies.isCurrent, true)))
-  await tx.insert(policies).values(row)
+  const [made] = await tx.insert(policies).values(row).$returningId()
+  return made!.id
+}
+
+/** What a row was computed from. */
+export async function findInput(db: Reader, id: number): Promise<unknown> {
+  const [row] = await db.select({ input: policies.input }).from(policies).where(eq(policies.id, id))
+  return row?.input ?? null
 }
 
 export async function updatePolicy(tx: Tx, id: number, set: Partial<PolicyRow>): Promise<void> {
@@ -58,6 +91,7 @@ export async function listHistory(db: Reader, binId: number, limit: number) {
       method: policies.method,
       mode: policies.mode,
       cause: policies.cause,
+      moved: sql<unknown>`json_extract(${policies.facts}, '$.moved')`,
       inForceSince: policies.inForceSince,
       createdAt: policies.createdAt,
     })
@@ -169,6 +203,16 @@ export async function listSupply(db: Reader, itemIds: number[]) {
 }
 export type SupplyRow = Awaited<ReturnType<typeof listSupply>>[number]
 
+/** How late deliveries of a supplier came against the stated moment, newest first. */
+export async function listDelays(db: Reader, supplierId: number) {
+  return db
+    .select({ itemId: leadTimeObservations.itemId, delayDays: leadTimeObservations.delayDays })
+    .from(leadTimeObservations)
+    .where(eq(leadTimeObservations.supplierId, supplierId))
+    .orderBy(desc(leadTimeObservations.arrivedAt), desc(leadTimeObservations.id))
+    .limit(delaysKept)
+}
+
 // Runs ------------------------------------------------------------------------------------------------------------
 export async function insertRun(db: Db, row: typeof policyRuns.$inferInsert): Promise<number> {
   const [made] = await db.insert(policyRuns).values(row).$returningId()
@@ -179,11 +223,22 @@ export async function updateRun(db: Db, id: number, set: Partial<typeof policyRu
   await db.update(policyRuns).set(set).where(eq(policyRuns.id, id))
 }
 
-export async function newestRun(db: Reader, cause: string) {
+/** A run that began since a moment and has not ended. */
+export async function findOpenRun(db: Reader, cause: string, since: Date) {
   const [row] = await db
     .select()
     .from(policyRuns)
-    .where(eq(policyRuns.cause, cause))
+    .where(and(eq(policyRuns.cause, cause), gte(policyRuns.startedAt, since), isNull(policyRuns.finishedAt)))
+    .orderBy(desc(policyRuns.startedAt), desc(policyRuns.id))
+    .limit(1)
+  return row ?? null
+}
+
+export async function newestRun(db: Reader, cause: string | null) {
+  const [row] = await db
+    .select()
+    .from(policyRuns)
+    .where(cause === null ? undefined : eq(policyRuns.cause, cause))
     .orderBy(desc(policyRuns.startedAt))
     .limit(1)
   return row ?? null

@@ -1,37 +1,44 @@
-import { learnDemand, type LearnedDemand } from '#shared/demand/learn-demand.ts'
-import { settle, type Levels, type Settlement } from '#shared/policy/in-force.ts'
 import type { PolicyInput } from '#shared/policy/policy-input.ts'
+import { settle, type Levels, type Settlement } from '#shared/policy/in-force.ts'
+import { protectionCdf } from '#shared/policy/protection-cdf.ts'
 import type { PolicyResult } from '#shared/policy/policy-result.ts'
 import { reorderPoint } from '#shared/policy/reorder-point.ts'
-import { protectionOf, type Protection } from '../catalogue/calendar.service.ts'
-import { readHospital } from '../catalogue/hospital.service.ts'
+import { splitCauses } from '#shared/policy/split-causes.ts'
+import type { LearnedDemand } from '#shared/demand/learn-demand.ts'
 import type { Clock } from '../clock.ts'
 import { momentOf, viewBins, type BinView } from '../counts/bin-view.service.ts'
-import { foldedLedger, lockBins, touchBins } from '../counts/levels.service.ts'
-import type { Db, Reader, Tx } from '../db/client.ts'
-import { inTransaction } from '../db/transaction.ts'
-import { aimsOf, type Aim } from '../review/aims.service.ts'
-import { policyInput } from './policy-inputs.ts'
+import { lockBins, touchBins } from '../counts/levels.service.ts'
+import type { Reader, Tx } from '../db/client.ts'
+import { complete, prepare, type Calculation, type Prepared } from './calculation.ts'
+import type { PolicyFacts } from './policy-facts.ts'
 import * as repo from './policy.repository.ts'
+import { readWorld, type World } from './world.ts'
 
 /** What made a policy be looked at. */
 export type Cause = Settlement['cause']
 
-/** A calculation with what it was made from. */
-interface Calculation {
-  learned: LearnedDemand
+/** A result worked out elsewhere, and what it was worked out from. */
+export interface Ready {
   input: PolicyInput
-  /** Method `entered` and no demand where there is nothing to learn from. */
   result: PolicyResult
-  protection: Protection
-  aim: Aim
 }
 
-/** Looks at one bin's policy again; the caller's transaction also holds what caused it. */
-export async function recompute(tx: Tx, clock: Clock, binId: number, cause: Cause): Promise<{ changed: boolean }> {
+/**
+ * Looks at one bin's policy again; the caller's transaction also holds what caused it.
+ *
+ * @param ready a result worked out beforehand: used when nothing it was made from has changed since
+ */
+export async function recompute(
+  tx: Tx,
+  clock: Clock,
+  binId: number,
+  cause: Cause,
+  world: World | null = null,
+  ready: Ready | null = null,
+): Promise<{ changed: boolean }> {
   await lockBins(tx, [binId])
-  const hospital = await readHospital(tx)
-  const [view] = await viewBins(tx, momentOf(clock, hospital.timeZone), {
+  const around = world ?? (await readWorld(tx))
+  const [view] = await viewBins(tx, momentOf(clock, around.hospital.timeZone), {
     roomIds: null,
     binIds: [binId],
     retired: false,
@@ -39,10 +46,12 @@ export async function recompute(tx: Tx, clock: Clock, binId: number, cause: Caus
   if (!view || view.bin.retired || !isComputed(view)) {
     await repo.retirePolicies(tx, binId)
     const main = view?.row.overflowOf ?? null
-    return main === null ? { changed: false } : recompute(tx, clock, main, cause)
+    return main === null ? { changed: false } : recompute(tx, clock, main, cause, world)
   }
   const now = clock.now()
-  const calculation = await calculate(tx, now, hospital, view)
+  const prepared = await prepare(tx, now, around, view)
+  const result = resultFor(prepared, ready)
+  const calculation = complete(now, around, prepared, result)
   await storeIntervals(tx, view, calculation.learned)
   const before = await repo.findCurrent(tx, binId)
   const changed = await store(tx, now, view, calculation, before, cause)
@@ -50,41 +59,12 @@ export async function recompute(tx: Tx, clock: Clock, binId: number, cause: Caus
   return { changed }
 }
 
+const resultFor = ({ input }: Prepared, ready: Ready | null): PolicyResult =>
+  ready !== null && JSON.stringify(ready.input) === JSON.stringify(input) ? ready.result : reorderPoint(input)
+
 /** Overflow places follow their main place; fixed sets are kept by their own list. */
-const isComputed = (view: BinView): boolean =>
+export const isComputed = (view: BinView): boolean =>
   view.row.itemId !== null && view.row.overflowOf === null && view.row.kind !== 'fixed-set'
-
-interface Money {
-  timeZone: string
-  orderingCost: number
-  holdingRatePerYear: number
-}
-
-async function calculate(tx: Tx, now: Date, hospital: Money, view: BinView): Promise<Calculation> {
-  const learned = await learnFrom(tx, view, now)
-  const itemId = view.row.itemId!
-  const aim = (await aimsOf(tx, [{ binId: view.row.id, itemId, ved: view.row.ved ?? 'D' }])).get(view.row.id)!
-  const [supply] = await repo.listSupply(tx, [itemId])
-  const protection = protectionOf(supply?.supplier ?? null, hospital.timeZone, {
-    // A place never counted is looked at as if now: its answer is what was entered.
-    countedAt: learned.lastCount ? new Date(learned.lastCount.at) : now,
-    asOf: now,
-    rhythmDays: learned.rhythmDays,
-  })
-  const input = policyInput({ view, learned, protection, supply: supply ?? null, aim, money: hospital })
-  return { learned, aim, input, result: reorderPoint(input), protection }
-}
-
-/** The demand process of a place and its overflow places, from what their ledgers hold up to a moment. */
-export async function learnFrom(db: Reader, view: BinView, until: Date | null): Promise<LearnedDemand> {
-  const rowsOf = async (binId: number, assignmentId: number | null) =>
-    (await foldedLedger(db, binId, assignmentId, until)).folded.rows
-  const own = await rowsOf(view.row.id, view.row.assignmentId)
-  const overflow = []
-  for (const place of view.overflow) overflow.push(await rowsOf(place.binId, place.assignmentId))
-  const options = { packSize: view.bin.packSize, plannedRhythmDays: view.row.countEveryDays }
-  return learnDemand(own, options, overflow)
-}
 
 const enteredLevels = (view: BinView): Levels => ({
   reorderPoint: view.row.enteredReorderPoint,
@@ -138,31 +118,61 @@ async function store(
     parLevel: settled.parLevel,
     orderQuantity: settled.orderQuantity,
   }
-  if (known && !settled.changed && sameFigures(known, row, calculation)) {
-    await repo.updatePolicy(tx, known.id, {
-      confirmedAt: now,
-      lowerCounts: lower,
-      lastCountOpId: closingCount(calculation),
-    })
-    return false
-  }
-  await repo.insertPolicy(tx, {
-    ...row,
-    binId: view.row.id,
-    assignmentId: view.row.assignmentId!,
-    isCurrent: true,
+  const fresh = {
     input: calculation.input,
     result: calculation.result,
     protection: calculation.protection,
-    cause,
-    lowerCounts: settled.changed ? 0 : lower,
     lastCountOpId: closingCount(calculation),
     asOf: now,
+    confirmedAt: now,
+  }
+  const basis = known?.basisId == null ? null : await repo.findInput(tx, known.basisId)
+  const sure = sureAt(calculation, settled.reorderPoint)
+  const pendingCauses = settled.pending ? causesOf(basis, calculation, known?.reorderPoint ?? null) : []
+  if (known && !settled.changed && sameFigures(known, row, calculation)) {
+    const before = factsOf(known)
+    const facts = { ...calculation.facts, sure, pendingCauses, moved: before?.moved ?? [] }
+    await repo.updatePolicy(tx, known.id, { ...fresh, facts, lowerCounts: lower })
+    return shownElsewhere(before) !== shownElsewhere(facts)
+  }
+  const isCalculated = settled.reorderPoint !== null && settled.reorderPoint === calculation.result.reorderPoint
+  const moved = known && settled.changed && isCalculated ? causesOf(basis, calculation, known.reorderPoint) : []
+  const id = await repo.insertPolicy(tx, {
+    ...row,
+    ...fresh,
+    facts: { ...calculation.facts, sure, pendingCauses, moved },
+    binId: view.row.id,
+    assignmentId: view.row.assignmentId!,
+    isCurrent: true,
+    basisId: settled.changed ? null : (known?.basisId ?? null),
+    cause,
+    lowerCounts: settled.changed ? 0 : lower,
     inForceSince: known && !settled.changed ? known.inForceSince : now,
     createdAt: now,
-    confirmedAt: now,
   })
+  if (settled.changed && isCalculated) await repo.updatePolicy(tx, id, { basisId: id })
   return true
+}
+
+export const factsOf = (row: Pick<repo.PolicyRow, 'facts'> | null): PolicyFacts | null =>
+  (row?.facts ?? null) as PolicyFacts | null
+
+/** What of the facts other screens and phones show. */
+const shownElsewhere = (facts: PolicyFacts | null): string =>
+  JSON.stringify([facts?.closed ?? null, facts?.gap ?? null])
+
+/** Estimated chance that one delivery cycle does not run out when orders are placed at this level. */
+function sureAt({ input, result }: Calculation, level: number | null): number | null {
+  if (level === null || result.demand === null) return null
+  return level === result.reorderPoint ? result.achieved : (protectionCdf(input)?.(level) ?? null)
+}
+
+/** How much each group of inputs moved the figure away from the one in force. */
+function causesOf(basis: unknown, calculation: Calculation, inForce: number | null): PolicyFacts['moved'] {
+  const computed = calculation.result.reorderPoint
+  if (computed === null) return []
+  if (basis === null) return [{ what: 'entered', units: computed - (inForce ?? 0) }]
+  return splitCauses(basis as PolicyInput, calculation.input)
 }
 
 interface Figures {
@@ -233,43 +243,6 @@ async function storeIntervals(tx: Tx, view: BinView, learned: LearnedDemand): Pr
   await repo.replaceIntervals(tx, stale, [...wanted.values()])
 }
 
-// In bulk ---------------------------------------------------------------------------------------------------------
-
-/** So many bins are worked out side by side: the database answers one while another is computed. */
-const atOnce = 3
-
-interface RunOptions {
-  /** Which bins; all of them when left out. */
-  binIds?: number[]
-  onProgress?: (done: number, of: number) => void
-}
-
-/** Many bins, one transaction each, with progress written down; a run cut short is begun again by its job. */
-export async function recomputeAll(db: Db, clock: Clock, cause: Cause, options: RunOptions = {}): Promise<number> {
-  const hospital = await readHospital(db)
-  const views = await viewBins(db, momentOf(clock, hospital.timeZone), { roomIds: null, retired: false })
-  const wanted = options.binIds ? new Set(options.binIds) : null
-  const waiting = views.map((v) => v.row.id).filter((id) => wanted === null || wanted.has(id))
-  const of = waiting.length
-  const run = await repo.insertRun(db, { startedAt: clock.now(), cause, bins: of, done: 0, changed: 0 })
-  let done = 0
-  let changed = 0
-  const work = async (): Promise<void> => {
-    for (let binId = waiting.shift(); binId !== undefined; binId = waiting.shift()) {
-      const id = binId
-      if ((await inTransaction(db, (tx) => recompute(tx, clock, id, cause))).changed) changed += 1
-      done += 1
-      if (done % 50 === 0) await repo.updateRun(db, run, { done, lastBinId: id, changed })
-      options.onProgress?.(done, of)
-    }
-  }
-  await Promise.all(Array.from({ length: atOnce }, work))
-  await repo.updateRun(db, run, { done, changed, finishedAt: clock.now() })
-  return changed
-}
-
-export const newestRun = repo.newestRun
-
 // For those who read ----------------------------------------------------------------------------------------------
 
 /** Estimated demand of every bin that has a calculation. */
@@ -288,6 +261,14 @@ export async function warningsOf(db: Reader): Promise<Map<number, string[]>> {
   const rows = await repo.listResults(db)
   return new Map(rows.map((row) => [row.binId, (row.result as PolicyResult | null)?.warnings ?? []]))
 }
+
+/** Bins with stretches of use that wait for a person's word, and how many. */
+export async function askedPlaces(db: Reader): Promise<Map<number, number>> {
+  return new Map((await repo.listAsked(db)).map((row) => [row.binId, row.questions]))
+}
+
+/** What a bin's figures come to, for those who add up. */
+export const currentFigures = repo.listFigures
 
 export const intervalCounts = repo.countIntervals
 export const cycleCounts = repo.countCycles

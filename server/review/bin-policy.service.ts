@@ -6,7 +6,10 @@ import type { Clock } from '../clock.ts'
 import { momentOf, viewBin } from '../counts/bin-view.service.ts'
 import type { Reader } from '../db/client.ts'
 import type { Actor } from '../http/context.ts'
-import { currentPolicy, policyHistory, storedIntervals } from '../policy/policy.service.ts'
+import { readExclusions } from '../policy/exclusions.service.ts'
+import type { PolicyFacts } from '../policy/policy-facts.ts'
+import { currentPolicy, factsOf, policyHistory, storedIntervals } from '../policy/policy.service.ts'
+import { readPool } from '../policy/pools.service.ts'
 import { aimsOf } from './aims.service.ts'
 import { proposalsOf } from './review.service.ts'
 
@@ -27,6 +30,7 @@ export async function readBinPolicy(db: Reader, clock: Clock, actor: Actor, binI
   const aim = aims?.get(binId)
   const result = (row?.result ?? null) as PolicyResult | null
   const intervals = await storedIntervals(db, binId)
+  const facts = factsOf(row)
   return {
     binId: String(binId),
     mode: view.row.roomMode,
@@ -35,7 +39,7 @@ export async function readBinPolicy(db: Reader, clock: Clock, actor: Actor, binI
     orderQuantity: row?.orderQuantity ?? null,
     since: row?.inForceSince.toISOString() ?? null,
     computed: result === null ? null : { ...result },
-    pending: pendingOf((row?.pending ?? null) as StoredPending | null, view.bin.reorderPoint),
+    pending: pendingOf((row?.pending ?? null) as StoredPending | null, facts),
     input: row?.input ?? null,
     asOf: row?.asOf.toISOString() ?? null,
     serviceLevel: {
@@ -61,6 +65,15 @@ export async function readBinPolicy(db: Reader, clock: Clock, actor: Actor, binI
     explanation: result?.explanation ?? [],
     protection: (row?.protection ?? null) as Protection | null,
     proposed: await proposedFor(db, actor, binId),
+    sureInForce: facts?.sure ?? null,
+    countsKept: facts?.countsKept ?? null,
+    demandClass: facts?.demandClass ?? null,
+    useStoppedSince: facts?.useStoppedSince ?? null,
+    questions: facts?.questions ?? [],
+    exclusions: await readExclusions(db, actor, binId, view.row.assignmentId),
+    pool: await readPool(db, view.row, facts?.pool ?? null),
+    changes: facts?.changes ?? [],
+    leadTimes: facts?.leadTimes ?? null,
     history: (await policyHistory(db, binId, 20)).map((h) => ({
       reorderPoint: h.reorderPoint,
       parLevel: h.parLevel,
@@ -68,15 +81,20 @@ export async function readBinPolicy(db: Reader, clock: Clock, actor: Actor, binI
       source: h.targetSource,
       method: h.method,
       cause: h.cause,
+      causes: movedOf(h.moved),
       since: h.inForceSince.toISOString(),
     })),
   }
 }
 
-/** Causes are split where one can be named; until then the whole change is the counts'. */
-function pendingOf(stored: StoredPending | null, inForce: number | null): BinPolicy['pending'] {
-  if (!stored) return null
-  return { ...stored, causes: [{ what: 'use', units: stored.reorderPoint - (inForce ?? 0) }] }
+type Moved = BinPolicy['history'][number]['causes']
+
+/** A part of a JSON column comes back as text or as what it holds, by the driver's knowledge of it. */
+const movedOf = (moved: unknown): Moved =>
+  (typeof moved === 'string' ? (JSON.parse(moved) as Moved | null) : (moved as Moved | null)) ?? []
+
+function pendingOf(stored: StoredPending | null, facts: PolicyFacts | null): BinPolicy['pending'] {
+  return stored && { ...stored, causes: facts?.pendingCauses ?? [] }
 }
 
 async function proposedFor(db: Reader, actor: Actor, binId: number): Promise<BinPolicy['proposed']> {

@@ -1,6 +1,9 @@
 import * as c from '#shared/contracts/policy.ts'
 import type { Routes } from '../http/endpoint.ts'
+import { addExclusion, endExclusion } from '../policy/exclusions.service.ts'
+import { setPoolWard } from '../policy/pools.service.ts'
 import { readBinPolicy } from './bin-policy.service.ts'
+import { readClassOutlook } from './outlook.service.ts'
 import * as review from './review.service.ts'
 
 export function reviewRoutes(routes: Routes): void {
@@ -26,5 +29,18 @@ export function reviewRoutes(routes: Routes): void {
     await review.setFloor(tx, clock, actor, Number(params.id), body)
     return readBinPolicy(tx, clock, actor, Number(params.id))
   })
+  routes.write(c.addExclusion, async ({ tx, clock, actor, params, body }) => {
+    await addExclusion(tx, clock, actor, Number(params.id), body)
+    return readBinPolicy(tx, clock, actor, Number(params.id))
+  })
+  routes.write(c.endExclusion, async ({ tx, clock, actor, params, body }) => {
+    const binId = await endExclusion(tx, clock, actor, Number(params.id), body.reason)
+    return readBinPolicy(tx, clock, actor, binId)
+  })
+  routes.write(c.setPoolWard, async ({ tx, clock, actor, params, body }) => {
+    await setPoolWard(tx, clock, actor, Number(params.id), body)
+    return readBinPolicy(tx, clock, actor, Number(params.id))
+  })
+  routes.read(c.readClassOutlook, ({ tx, clock, actor }) => readClassOutlook(tx, clock, actor))
   routes.read(c.listReview, ({ tx, clock, actor, query }) => review.listReview(tx, clock, actor, query))
 }

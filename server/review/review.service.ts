@@ -7,7 +7,14 @@ import type { Clock } from '../clock.ts'
 import { momentOf, pageOf, viewBin, viewBins, type BinView } from '../counts/bin-view.service.ts'
 import type { Reader, Tx } from '../db/client.ts'
 import type { Actor } from '../http/context.ts'
-import { cycleCounts, intervalCounts, movedSince, recompute, warningsOf } from '../policy/policy.service.ts'
+import {
+  askedPlaces,
+  cycleCounts,
+  intervalCounts,
+  movedSince,
+  recompute,
+  warningsOf,
+} from '../policy/policy.service.ts'
 import { peopleNames } from '../people/people.service.ts'
 import { aimsOf, type Aim } from './aims.service.ts'
 import * as repo from './review.repository.ts'
@@ -220,7 +227,7 @@ function reviewState(aim: Aim, today: DateTime): ReviewRow['review'] {
 const urgency: Record<ReviewRow['review'], number> = { due: 0, 'this-week': 1, later: 2, none: 2 }
 
 interface ListQuery {
-  show: 'due' | 'proposed' | 'vital' | 'moved' | 'all'
+  show: 'due' | 'proposed' | 'vital' | 'moved' | 'asked' | 'all'
   roomId?: string
   q?: string
   page: number
@@ -252,6 +259,7 @@ export async function reviewRows(
   const cycles = new Map((await cycleCounts(db, ids)).map((c) => [c.binId, c]))
   const proposals = await proposalsOf(db, actor, ids)
   const warnings = await warningsOf(db)
+  const asked = await askedPlaces(db)
   const today = DateTime.fromJSDate(clock.now(), { zone: timeZone }).startOf('day')
   return views.map((v) => {
     const aim = aims.get(v.row.id)!
@@ -270,6 +278,7 @@ export async function reviewRows(
         ? { id: proposal.id, level: proposal.level, byName: proposal.byName, own: proposal.own }
         : null,
       warnings: warnings.get(v.row.id) ?? [],
+      questions: asked.get(v.row.id) ?? 0,
     }
   })
 }
@@ -282,6 +291,7 @@ export async function listReview(db: Reader, clock: Clock, actor: Actor, query: 
   const moved = query.show === 'moved' ? new Set((await recentMoves(db, clock)).map((m) => String(m.binId))) : null
   const wanted = rows.filter((r) => {
     if (query.show === 'due') return r.review === 'due' || r.review === 'this-week'
+    if (query.show === 'asked') return r.questions > 0
     if (query.show === 'proposed') return r.proposal !== null
     if (query.show === 'vital')
       return r.item?.ved === 'V' || r.review === 'due' || r.review === 'this-week' || r.proposal !== null

@@ -65,7 +65,7 @@ async function buildServer() {
   const { build } = await import('esbuild')
   await build({
     absWorkingDir: root,
-    entryPoints: { main: 'server/main.ts' },
+    entryPoints: { main: 'server/main.ts', 'policy-worker': 'server/policy/policy-worker.ts' },
     outdir: '.build/server',
     bundle: true,
     splitting: false,

@@ -74,6 +74,8 @@ export const BinPolicy = z.object({
       own: z.boolean(),
     })
     .nullable(),
+  /** Estimated chance that one delivery cycle does not run out with the figure in force; null where nobody can say. */
+  sureInForce: z.number().nullable(),
   /** Planned counts of late that were kept. */
   countsKept: z.object({ kept: z.number().int(), of: z.number().int() }).nullable(),
   /** How use comes, after Syntetos, Boylan and Croston; null with too few counts. */
@@ -136,6 +138,8 @@ export const BinPolicy = z.object({
       source: ServiceLevel.shape.source,
       method: z.string(),
       cause: z.string(),
+      /** How much each group of inputs moved it; empty where a person's figure took over. */
+      causes: z.array(z.object({ what: z.string(), units: z.number() })),
       since: Instant,
     }),
   ),

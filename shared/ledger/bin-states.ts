@@ -16,6 +16,8 @@ export interface BinFacts {
   /** Estimated use per day; null when unknown. */
   meanPerDay: number | null
   countEveryDays: number
+  /** The place is shut for a planned time: no counts are due and nothing is flagged. */
+  isQuiet?: boolean
 }
 
 /** Position = on hand + on order still believed. Source: any stock-control text; see README "Words". */
@@ -30,13 +32,14 @@ export function binStatesOf(facts: BinFacts, now: number): BinState[] {
   const states: BinState[] = []
   const counted = facts.lastCount !== null
   const pos = position(facts)
-  const below = counted && facts.reorderPoint !== null && !facts.isOverflow && pos <= facts.reorderPoint
+  const isQuiet = facts.isQuiet ?? false
+  const below = counted && facts.reorderPoint !== null && !facts.isOverflow && !isQuiet && pos <= facts.reorderPoint
   if (below) states.push('below')
   else if (counted) states.push('ok')
   if (counted && facts.lastCount?.quantity === 0 && facts.onHand <= 0) states.push('empty')
   if (!counted && facts.hasItem) states.push('never-counted')
-  if (counted && !below && runsShort(facts, pos, now)) states.push('count-first')
-  if (counted && now - (facts.lastCount?.effectiveAt ?? now) > facts.countEveryDays * dayMs)
+  if (counted && !below && !isQuiet && runsShort(facts, pos, now)) states.push('count-first')
+  if (counted && !isQuiet && now - (facts.lastCount?.effectiveAt ?? now) > facts.countEveryDays * dayMs)
     states.push('count-overdue')
   if (facts.onOrder > 0) states.push('on-order')
   if (facts.hasLateOrder) states.push('late-order')

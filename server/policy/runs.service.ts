@@ -1,0 +1,113 @@
+import type { PolicyInput } from '#shared/policy/policy-input.ts'
+import type { Clock } from '../clock.ts'
+import { momentOf, viewBins, type BinView } from '../counts/bin-view.service.ts'
+import type { Db, Reader } from '../db/client.ts'
+import { inTransaction } from '../db/transaction.ts'
+import { prepare } from './calculation.ts'
+import { isComputed, recompute, type Cause, type Ready } from './policy.service.ts'
+import * as repo from './policy.repository.ts'
+import { freezeShared } from './pools.service.ts'
+import { onThisThread, startPolicyWorkers, type PolicyWorkers } from './policy-workers.ts'
+import { readWorld, type World } from './world.ts'
+
+/** Bins read together, worked out in the workers, and written one by one. */
+const chunkSize = 48
+/** Fewer bins than this are done before a thread has started. */
+const worthThreads = 150
+/** So many bins are read or written side by side: the database answers one while another is looked at. */
+const atOnce = 3
+
+interface RunOptions {
+  /** Which bins; all of them when left out. */
+  binIds?: number[]
+  /** A run of this cause begun since then and cut short is gone on with, where it stopped. */
+  resumeSince?: Date
+  onProgress?: (done: number, of: number) => void
+}
+
+/**
+ * Works out many bins, one transaction each, in the order of their ids and with progress written down, so that a run
+ * that was cut short goes on where it stopped and no bin is ever left with half a policy.
+ *
+ * A night's run first freezes what places teach each other. Results come from worker threads; each is used only if the
+ * bin's input still is what it was worked out from, else it is worked out anew under the lock.
+ * @returns how many bins changed, over all parts of the run
+ */
+export async function recomputeAll(db: Db, clock: Clock, cause: Cause, options: RunOptions = {}): Promise<number> {
+  const open = options.resumeSince ? await repo.findOpenRun(db, cause, options.resumeSince) : null
+  if (cause === 'nightly' && open === null) await freezeShared(db, clock)
+  const world = await readWorld(db, true)
+  const wanted = options.binIds ? new Set(options.binIds) : null
+  const views = (await viewBins(db, momentOf(clock, world.hospital.timeZone), { roomIds: null, retired: false }))
+    .filter((v) => wanted === null || wanted.has(v.row.id))
+    .sort((a, b) => a.row.id - b.row.id)
+  const left = views.filter((v) => open?.lastBinId == null || v.row.id > open.lastBinId)
+  const of = views.length
+  let done = of - left.length
+  let changed = open?.changed ?? 0
+  const run = open?.id ?? (await repo.insertRun(db, { startedAt: clock.now(), cause, bins: of, done: 0, changed: 0 }))
+  const workers = left.length >= worthThreads ? startPolicyWorkers() : onThisThread
+  try {
+    for (let i = 0; i < left.length; i += chunkSize) {
+      const chunk = left.slice(i, i + chunkSize)
+      changed += await workOut(db, clock, world, cause, chunk, workers)
+      done += chunk.length
+      await repo.updateRun(db, run, { bins: of, done, changed, lastBinId: chunk.at(-1)!.row.id })
+      options.onProgress?.(done, of)
+    }
+  } finally {
+    await workers.stop()
+  }
+  await repo.updateRun(db, run, { done: of, changed, finishedAt: clock.now() })
+  return changed
+}
+
+async function workOut(
+  db: Db,
+  clock: Clock,
+  world: World,
+  cause: Cause,
+  chunk: BinView[],
+  workers: PolicyWorkers,
+): Promise<number> {
+  const inputs = new Map<number, PolicyInput>()
+  const computed = chunk.filter(isComputed)
+  await sideBySide(computed, async (view) => {
+    inputs.set(view.row.id, (await prepare(db, clock.now(), world, view)).input)
+  })
+  const asked = [...inputs]
+  const results = await workers.compute(asked.map(([, input]) => input))
+  const ready = new Map<number, Ready>(asked.map(([id, input], i) => [id, { input, result: results[i]! }]))
+  let changed = 0
+  await sideBySide(chunk, async ({ row }) => {
+    const answer = await inTransaction(db, (tx) =>
+      recompute(tx, clock, row.id, cause, world, ready.get(row.id) ?? null),
+    )
+    if (answer.changed) changed += 1
+  })
+  return changed
+}
+
+async function sideBySide<T>(all: readonly T[], work: (one: T) => Promise<void>): Promise<void> {
+  const waiting = [...all]
+  const worker = async (): Promise<void> => {
+    for (let next = waiting.shift(); next !== undefined; next = waiting.shift()) await work(next)
+  }
+  await Promise.all(Array.from({ length: atOnce }, worker))
+}
+
+export const newestRun = repo.newestRun
+
+/** How far the newest run has come. */
+export async function readRun(db: Reader) {
+  const run = await repo.newestRun(db, null)
+  return {
+    run: run && {
+      startedAt: run.startedAt.toISOString(),
+      finishedAt: run.finishedAt?.toISOString() ?? null,
+      bins: run.bins,
+      done: run.done,
+      changed: run.changed,
+    },
+  }
+}
