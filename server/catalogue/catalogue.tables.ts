@@ -1,4 +1,15 @@
-import { boolean, date, double, index, int, mysqlTable, primaryKey, tinyint, unique, varchar } from 'drizzle-orm/mysql-core'
+import {
+  boolean,
+  date,
+  double,
+  index,
+  int,
+  mysqlTable,
+  primaryKey,
+  tinyint,
+  unique,
+  varchar,
+} from 'drizzle-orm/mysql-core'
 import { id, instant, ref } from '../db/columns.ts'
 import type { RoomMode, Ved } from '#shared/contracts/catalogue.ts'
 
