@@ -7,8 +7,50 @@ import { combinedMoments, countedWastage } from './fitted.ts'
 import type { Fitted, Horizon } from './fitted.ts'
 import { singleNode } from './mixture-nodes.ts'
 import { mixtureLevel } from './mixture-run.ts'
+import { orderQuantity } from './order-quantity.ts'
+import type { OrderQuantity } from './order-quantity.ts'
 import { refused } from './policy-input-error.ts'
 import type { ResolvedInput } from './resolve-input.ts'
+
+/** The levels of a policy and how each came about. Units of use. */
+export interface PolicyLevels {
+  /** Smallest level that meets the aim */
+  computed: number
+  /** The same where the shelf leaves room for one pack above it */
+  held: number
+  /** Never below the pinned floor */
+  point: number
+  order: OrderQuantity
+  /** Units used or wasted per day */
+  usePerDay: number
+}
+
+/**
+ * Reorder point and order quantity under the law of demand over the protection interval.
+ *
+ * @throws {PolicyInputError} where no level meets the aim
+ */
+export function policyLevels(input: ResolvedInput, fitted: Fitted, law: DemandLaw): PolicyLevels {
+  const computed = computedLevel(input, law)
+  const held = input.capacity === null ? computed : Math.min(computed, shelfLimit(input))
+  const point = Math.max(input.pinnedFloor ?? 0, held)
+  const usePerDay = fitted.meanPerDay + countedWastage(input.wastagePerDay, fitted.meanPerDay)
+  const order = orderQuantity(input, usePerDay, point, (days) => lawOverLife(fitted, days))
+  return { computed, held, point, order, usePerDay }
+}
+
+/** A cut leaves room for one pack above the reorder point. */
+function shelfLimit(input: ResolvedInput): number {
+  return Math.max(0, input.capacity! - input.order.packSize)
+}
+
+/** The shelf life is a fixed stretch of usual activity, whatever the lead time does; daily records become counts. */
+function lawOverLife(fitted: Fitted, days: number): DemandLaw {
+  const horizon: Horizon = { days, exposure: days, variance: 0 }
+  if (fitted.method !== 'bootstrap' && fitted.method !== 'empirical') return fitted.lawOver(horizon)
+  const { mean, variance } = combinedMoments(fitted.meanPerDay, fitted.variancePerDay ?? fitted.meanPerDay, horizon)
+  return negativeBinomialLaw(mean, variance)
+}
 
 /** What a level achieves in the measure asked for: delivery cycles that do not run out, or units served. */
 export function serviceOf(input: ResolvedInput, law: DemandLaw): (level: number) => number {
@@ -17,15 +59,10 @@ export function serviceOf(input: ResolvedInput, law: DemandLaw): (level: number)
   return (level) => 1 - (law.loss!(level) - law.loss!(level + quantity)) / quantity
 }
 
-/**
- * Smallest whole level that meets the aim.
- *
- * @throws {PolicyInputError} where no level does
- */
-export function computedLevel(input: ResolvedInput, law: DemandLaw, service: (level: number) => number): number {
+function computedLevel(input: ResolvedInput, law: DemandLaw): number {
   try {
     if (input.serviceMeasure === 'cycle') return levelFor(law, input.serviceLevel)
-    return integerQuantile(service, input.serviceLevel, law.mean)
+    return integerQuantile(serviceOf(input, law), input.serviceLevel, law.mean)
   } catch (error) {
     if (!(error instanceof RangeError)) throw error
     throw refused(input.intervals ? '/intervals' : '/demand', 'the figures vary too much for any level to meet the aim')

@@ -1,19 +1,13 @@
-import { negativeBinomialLaw } from './count-laws.ts'
-import type { DemandLaw } from './demand-law.ts'
 import { demandSummary } from './demand-summary.ts'
 import { enteredResult } from './entered-result.ts'
 import { explainPolicy } from './explain-policy.ts'
 import { fitMethod } from './fit-method.ts'
-import { combinedMoments, countedWastage } from './fitted.ts'
-import type { Fitted, Horizon } from './fitted.ts'
-import { orderQuantity } from './order-quantity.ts'
-import { computedLevel, dataCarry, plugInLevel, serviceOf, textbookLevel } from './policy-levels.ts'
+import { dataCarry, plugInLevel, policyLevels, serviceOf, textbookLevel } from './policy-levels.ts'
 import type { PolicyInput } from './policy-input.ts'
 import type { PolicyResult } from './policy-result.ts'
 import { policyWarnings } from './policy-warnings.ts'
 import { protectionLaw } from './protection-law.ts'
 import { resolveInput } from './resolve-input.ts'
-import type { ResolvedInput } from './resolve-input.ts'
 import { fillRate, readyRate } from './service-rates.ts'
 
 /**
@@ -33,11 +27,7 @@ export function reorderPoint(input: PolicyInput): PolicyResult {
   if (!fitted) return enteredResult(resolved)
   const law = protectionLaw(resolved, fitted)
   const service = serviceOf(resolved, law)
-  const computed = computedLevel(resolved, law, service)
-  const held = resolved.capacity === null ? computed : Math.min(computed, shelfLimit(resolved))
-  const point = Math.max(resolved.pinnedFloor ?? 0, held)
-  const usePerDay = fitted.meanPerDay + countedWastage(resolved.wastagePerDay, fitted.meanPerDay)
-  const order = orderQuantity(resolved, usePerDay, point, (days) => lawOverLife(fitted, days))
+  const { computed, held, point, order } = policyLevels(resolved, fitted, law)
   const textbook = textbookLevel(resolved)
   const plugIn = plugInLevel(resolved, fitted)
   const cut = held < computed
@@ -67,17 +57,4 @@ export function reorderPoint(input: PolicyInput): PolicyResult {
   }
   result.explanation = explainPolicy(resolved, fitted, law, result, order)
   return result
-}
-
-/** A cut leaves room for one pack above the reorder point. */
-function shelfLimit(input: ResolvedInput): number {
-  return Math.max(0, input.capacity! - input.order.packSize)
-}
-
-/** The shelf life is a fixed stretch of usual activity, whatever the lead time does; daily records become counts. */
-function lawOverLife(fitted: Fitted, days: number): DemandLaw {
-  const horizon: Horizon = { days, exposure: days, variance: 0 }
-  if (fitted.method !== 'bootstrap' && fitted.method !== 'empirical') return fitted.lawOver(horizon)
-  const { mean, variance } = combinedMoments(fitted.meanPerDay, fitted.variancePerDay ?? fitted.meanPerDay, horizon)
-  return negativeBinomialLaw(mean, variance)
 }
