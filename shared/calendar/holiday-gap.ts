@@ -24,11 +24,9 @@ interface Slot {
 }
 
 const dayMs = 86_400_000
-/** So long before a moment slots are looked at, beside twice the lead: a longer closed run is no holiday. */
-const lookBackDays = 60
 const searchDays = 366
-/** Weeks of an ordinary calendar that are looked at: every pattern of a week shows within them. */
-const ordinaryWeeks = 4
+/** Within so many days of an ordinary calendar every pair of neighbouring slots of a week comes up. */
+const ordinaryDays = 14
 
 /**
  * The gaps between two moments: where holidays, or dates on which the ward takes no delivery, put two neighbouring
@@ -42,7 +40,7 @@ const ordinaryWeeks = 4
 export function holidayGaps(calendar: OrderCalendar, from: number, to: number): HolidayGap[] {
   const ordinary = longestOrdinary(calendar)
   const gaps: HolidayGap[] = []
-  let last = slotAt(calendar, from - (lookBackDays + 2 * calendar.lead.days) * dayMs)
+  let last = slotBefore(calendar, from)
   while (last.arrives <= to) {
     const next = slotAt(calendar, last.orderBy, true)
     if (next.arrives > from && wallDays(calendar.zone, last.arrives, next.arrives) > ordinary) {
@@ -59,6 +57,14 @@ function slotAt(calendar: OrderCalendar, from: number, after = false): Slot {
   return { orderBy, arrives: arrivalOf(calendar, orderBy) }
 }
 
+/** A slot whose order is there by a moment, not long before it; one of a year ago where none comes that early. */
+function slotBefore(calendar: OrderCalendar, moment: number): Slot {
+  for (let back = 7 + 2 * calendar.lead.days; ; back *= 2) {
+    const slot = slotAt(calendar, moment - back * dayMs)
+    if (slot.arrives <= moment || back > searchDays) return slot
+  }
+}
+
 const wallDays = (zone: string, from: number, to: number): number => {
   const wall = (moment: number): number =>
     DateTime.fromMillis(moment, { zone }).setZone('utc', { keepLocalTime: true }).toMillis()
@@ -70,7 +76,7 @@ function longestOrdinary(calendar: OrderCalendar): number {
   const open = { ...calendar, zone: 'utc', holidays: new Set<string>(), closedToDeliveries: new Set<string>() }
   let longest = 0
   let last = slotAt(open, 0)
-  while (last.orderBy < ordinaryWeeks * 7 * dayMs) {
+  while (last.orderBy < ordinaryDays * dayMs) {
     const next = slotAt(open, last.orderBy, true)
     longest = Math.max(longest, (next.arrives - last.arrives) / dayMs)
     last = next

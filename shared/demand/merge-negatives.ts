@@ -14,32 +14,31 @@ export interface Merged {
 export function mergeNegatives(intervals: readonly DemandInterval[]): Merged {
   const merged = [...intervals]
   const mergedIds = new Set<string>()
-  const settled = new Set<string>()
-  for (;;) {
-    const at = merged.findIndex((i) => i.used && i.quantity < 0 && !settled.has(i.closingOpId))
-    if (at < 0) return { intervals: merged, mergedIds }
-    const other = neighbourOf(merged, at)
+  const used = intervals.filter((i) => i.used)
+  // Merging moves neither sum.
+  const perDay = used.reduce((sum, i) => sum + i.quantity, 0) / used.reduce((sum, i) => sum + i.exposureDays, 0)
+  for (let at = 0; at < merged.length;) {
+    const other = merged[at]!.used && merged[at]!.quantity < 0 ? neighbourOf(merged, at, perDay) : null
     if (other === null) {
-      settled.add(merged[at]!.closingOpId)
+      at += 1
       continue
     }
-    const first = Math.min(at, other)
-    const [left, right] = [merged[first]!, merged[first + 1]!]
+    at = Math.min(at, other)
+    const [left, right] = [merged[at]!, merged[at + 1]!]
     mergedIds.add(left.closingOpId).add(right.closingOpId)
-    merged.splice(first, 2, join(left, right))
+    merged.splice(at, 2, join(left, right))
   }
+  return { intervals: merged, mergedIds }
 }
 
 /** The used neighbour across a shared count that lies furthest above the mean: the likeliest other half of a miscount. */
-function neighbourOf(intervals: DemandInterval[], at: number): number | null {
-  const used = intervals.filter((i) => i.used)
-  const mean = used.reduce((s, i) => s + i.quantity, 0) / used.reduce((s, i) => s + i.exposureDays, 0)
+function neighbourOf(intervals: readonly DemandInterval[], at: number, perDay: number): number | null {
   const here = intervals[at]!
   const candidates = [at - 1, at + 1].filter((i) => {
     const there = intervals[i]
     return there?.used && (i < at ? there.closingOpId === here.openingOpId : here.closingOpId === there.openingOpId)
   })
-  const residual = (i: number): number => intervals[i]!.quantity - mean * intervals[i]!.exposureDays
+  const residual = (i: number): number => intervals[i]!.quantity - perDay * intervals[i]!.exposureDays
   return candidates.reduce<number | null>((best, i) => (best === null || residual(i) > residual(best) ? i : best), null)
 }
 
