@@ -15,6 +15,7 @@ import { isDuplicate } from '../db/errors.ts'
 import type { Actor } from '../http/context.ts'
 import { queueMail } from '../mail/mail.service.ts'
 import { readUser } from '../people/people.service.ts'
+import { observeLeadTimes } from './lead-times.service.ts'
 import { orderMail } from './order-mail.ts'
 import * as repo from './replenishment.repository.ts'
 
@@ -347,6 +348,12 @@ export async function cancelOrder(
     cancelReason: reason ?? null,
   })
   await repo.releaseBins(tx, id)
+  // What is there may be all of what is left of a line.
+  if (before.state !== 'draft')
+    await observeLeadTimes(
+      tx,
+      before.lines.map((l) => Number(l.id)),
+    )
   await audit(tx, {
     at: now,
     userId: actor.id,
