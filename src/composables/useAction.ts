@@ -9,6 +9,8 @@ export interface Action<A extends unknown[], R> {
   fields: ComputedRef<Record<string, string>>
   /** What went wrong apart from single fields, which say it themselves. */
   general: ComputedRef<unknown>
+  /** Forgets what went wrong, before it is tried anew. */
+  clear: () => void
 }
 
 /**
@@ -41,5 +43,8 @@ export function useAction<A extends unknown[], R>(work: (...args: A) => Promise<
       busy.value = false
     }
   }
-  return { run, busy, error, fields, general }
+  const clear = (): void => {
+    error.value = null
+  }
+  return { run, busy, error, fields, general, clear }
 }

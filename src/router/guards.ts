@@ -12,6 +12,8 @@ declare module 'vue-router' {
     offline?: boolean
     /** The place that is marked in the bar. */
     place?: string
+    /** Roles that reach the page from another place. */
+    placeOf?: Partial<Record<Role, string>>
   }
 }
 

@@ -57,6 +57,11 @@ export const routes: RouteRecordRaw[] = [
         meta: { place: 'restock', roles: ['coordinator'] },
         children: [
           { path: '', name: 'restock', component: () => import('#src/pages/replenishment/RestockPage.vue') },
+          {
+            path: 'holiday',
+            name: 'holiday',
+            component: () => import('#src/pages/replenishment/HolidayPage.vue'),
+          },
           { path: 'orders', name: 'orders', component: () => import('#src/pages/replenishment/OrdersPage.vue') },
           {
             path: 'orders/:orderId',
@@ -81,6 +86,23 @@ export const routes: RouteRecordRaw[] = [
         ],
       },
       {
+        path: 'planned-changes',
+        meta: {
+          place: 'hospital',
+          placeOf: { reviewer: 'review' },
+          roles: ['coordinator', 'reviewer', 'administrator'],
+        },
+        children: [
+          { path: '', name: 'planned-changes', component: () => import('#src/pages/planned/PlannedListPage.vue') },
+          {
+            path: ':id',
+            name: 'planned-change',
+            component: () => import('#src/pages/planned/PlannedPage.vue'),
+            props: true,
+          },
+        ],
+      },
+      {
         path: 'hospital',
         component: () => import('#src/pages/catalogue/HospitalFrame.vue'),
         meta: { place: 'hospital', roles: ['coordinator', 'administrator'] },
@@ -91,6 +113,17 @@ export const routes: RouteRecordRaw[] = [
             name: 'hospital-settings',
             component: () => import('#src/pages/catalogue/SettingsPage.vue'),
             meta: { roles: ['administrator'] },
+          },
+          {
+            path: 'calendars',
+            name: 'calendars',
+            component: () => import('#src/pages/catalogue/CalendarListPage.vue'),
+          },
+          {
+            path: 'calendars/:id',
+            name: 'calendar',
+            component: () => import('#src/pages/catalogue/CalendarPage.vue'),
+            props: true,
           },
           {
             path: ':kind(wards|rooms|items|suppliers|bins|people)',

@@ -6,9 +6,11 @@ import {
   createOrder,
   listOrders,
   readOrder,
+  readGapAhead,
   readWorklist,
   sendOrder,
   updateOrder,
+  type GapAhead,
   type Order,
   type WorklistRow,
 } from '#shared/contracts/replenishment.ts'
@@ -25,6 +27,8 @@ export interface WorklistFilter {
 export const useReplenishmentStore = defineStore('replenishment', () => {
   const worklist = shallowRef<WorklistRow[] | null>(null)
   const orders = shallowRef<Order[] | null>(null)
+  /** Holiday gaps ahead, one a supplier, with what would not last over them. */
+  const gaps = shallowRef<GapAhead[] | null>(null)
   /** The draft that the pane shows. */
   const draftId = ref<string | null>(null)
 
@@ -55,16 +59,25 @@ export const useReplenishmentStore = defineStore('replenishment', () => {
   const linesOf = (order: Order): { binId: string; packs: number }[] =>
     order.lines.map((line) => ({ binId: line.binId, packs: line.packs }))
 
-  /** Puts packs of a bin into the draft of its supplier; starts one where there is none. */
-  async function add(row: WorklistRow, packs: number): Promise<Order> {
-    const { supplierId, binId } = row
-    if (!supplierId) throw new TypeError('an item without a supplier cannot be ordered')
+  async function loadGaps(signal?: AbortSignal): Promise<void> {
+    const { items } = await call(readGapAhead, { query: {}, signal })
+    gaps.value = items.filter((one) => one.gap !== null)
+  }
+
+  /** Puts packs of bins into the draft of their supplier; starts one where there is none. */
+  async function addLines(supplierId: string, lines: readonly { binId: string; packs: number }[]): Promise<Order> {
     const open = drafts.value.find((order) => order.supplierId === supplierId)
+    const ids = new Set(lines.map((line) => line.binId))
     const order = open
-      ? await change(open, [...linesOf(open).filter((line) => line.binId !== binId), { binId, packs }])
-      : put(await call(createOrder, { body: { supplierId, lines: [{ binId, packs }] } }))
+      ? await change(open, [...linesOf(open).filter((line) => !ids.has(line.binId)), ...lines])
+      : put(await call(createOrder, { body: { supplierId, lines: [...lines] } }))
     draftId.value = order.id
     return order
+  }
+
+  async function add(row: WorklistRow, packs: number): Promise<Order> {
+    if (!row.supplierId) throw new TypeError('an item without a supplier cannot be ordered')
+    return addLines(row.supplierId, [{ binId: row.binId, packs }])
   }
 
   async function change(order: Order, lines: { binId: string; packs: number }[]): Promise<Order> {
@@ -93,18 +106,22 @@ export const useReplenishmentStore = defineStore('replenishment', () => {
   useSessionStore().onClearReads(() => {
     worklist.value = null
     orders.value = null
+    gaps.value = null
     draftId.value = null
   })
 
   return {
     worklist,
     orders,
+    gaps,
     draftId,
     drafts,
     draft,
     loadWorklist,
     loadOrders,
     loadOrder,
+    loadGaps,
+    addLines,
     add,
     setPacks,
     remove,

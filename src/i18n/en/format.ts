@@ -79,6 +79,12 @@ export const day = (date: string): string => plain(date).toFormat('d LLLL yyyy')
 export const shortDay = (date: string): string => plain(date).toFormat('d LLL')
 /** 12 May 2027, 07:10, from an instant. */
 export const moment = (iso: string, zone: string): string => at(iso, zone).toFormat('d LLLL yyyy, HH:mm')
+/** Fri 25 December, from a plain date. */
+export const weekdayDay = (date: string): string => plain(date).toFormat('ccc d LLLL')
+/** Wed 23 Dec, 10:00, from an instant. */
+export const dayAndClock = (iso: string, zone: string): string => at(iso, zone).toFormat('ccc d LLL, HH:mm')
+/** Wed 23 Dec, from an instant. */
+export const weekdayOf = (iso: string, zone: string): string => at(iso, zone).toFormat('ccc d LLL')
 /** Thursday 14 May. */
 export const dayHeading = (iso: string, zone: string): string => at(iso, zone).toFormat('cccc d LLLL')
 /** The plain date of an instant in the hospital's zone. */

@@ -113,6 +113,15 @@ export const fieldWords = {
   site: { label: 'Site' },
   wardId: { label: 'Ward' },
   countEveryDays: { label: 'Counted every', suffix: 'days' },
+  countDays: { label: 'Weekdays on which it is counted', hint: 'None ticked: every day.' },
+  wardCalendar: {
+    label: 'Calendar of closed days',
+    hint: 'On its days the ward takes no deliveries and counts nothing.',
+  },
+  supplierCalendar: {
+    label: 'Calendar of closed days',
+    hint: 'On its days the supplier takes no orders and delivers nothing.',
+  },
   mode: { label: 'How levels are kept' },
   email: { label: 'E-mail' },
   orderEmail: { label: 'E-mail for orders', hint: 'Orders go there; empty for a requisition to central stores.' },
@@ -179,5 +188,13 @@ export const fieldWords = {
   vitalPolicyLink: { label: 'Link to the policy' },
   resupplyPhone: { label: 'Phone number for urgent supply' },
   orderingCost: { label: 'Cost of placing an order' },
+  hospitalCalendar: {
+    label: 'Calendar of closed days',
+    hint: 'Holds wherever a ward or a supplier names no other.',
+  },
+  pooling: {
+    label: 'Places with few counts learn from like wards',
+    hint: 'The same item in wards of the same kind lends its use until a place has counts enough of its own.',
+  },
   holdingRatePerYear: { label: 'Cost of holding stock, a year', hint: 'As a share of its price, such as 0.2.' },
 } as const

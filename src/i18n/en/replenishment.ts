@@ -1,7 +1,7 @@
 import type { Bin } from '#shared/contracts/bins.ts'
-import type { Order, OrderState, WorklistRow } from '#shared/contracts/replenishment.ts'
+import type { GapAhead, Order, OrderState, WorklistRow } from '#shared/contracts/replenishment.ts'
 import type { Moment } from './catalogue.ts'
-import { counted, dateOf, decimal, dueOn, dueShort, near, quantity } from './format.ts'
+import { counted, dateOf, dayAndClock, decimal, dueOn, dueShort, near, quantity, weekdayOf } from './format.ts'
 
 type Line = Order['lines'][number]
 
@@ -98,6 +98,7 @@ export const replenishmentWords = {
   noDraft: 'No draft yet',
   noDraftWhat: 'Choose a row to see why, then add it. A draft is kept until you send or cancel it.',
   add: (n: number, unit: string): string => `Add ${counted(n, unit)}`,
+  change: (n: number, unit: string): string => `Change to ${counted(n, unit)}`,
   added: (number: string): string => `in ${number}`,
   goesTo: (supplier: string): string => `It goes into a draft for ${supplier}.`,
   takeOut: 'Take out',
@@ -127,6 +128,36 @@ export const replenishmentWords = {
       : risk < 0.005
         ? 'hardly likely to run out before the next delivery'
         : `about 1 in ${decimal(1 / risk, 1 / risk < 3 ? 1 : 0)} runs out before the next delivery`,
+} as const
+
+type Gap = NonNullable<GapAhead['gap']>
+type GapSlot = GapAhead['slots'][number]
+
+/** Orders before a holiday: what would not last over it, and by which order to bring it. */
+export const holidayWords = {
+  tab: 'Before the holiday',
+  lead: 'What would not last over the closed days, by the order that should bring it. Estimates from counts.',
+  heading: (gap: Gap): string => `${gap.name}, ${gap.supplierName}`,
+  times: (gap: Gap, at: Moment): string =>
+    `Last order ${dayAndClock(gap.lastOrderBy, at.zone)}; it comes ${weekdayOf(gap.lastArrival, at.zone)}. First delivery after it: ${weekdayOf(gap.nextArrival, at.zone)}.`,
+  slot: (slot: Pick<GapSlot, 'orderBy'>, at: Moment): string => `Order by ${dayAndClock(slot.orderBy, at.zone)}`,
+  comes: (slot: Pick<GapSlot, 'arrives'>, at: Moment): string => `comes ${weekdayOf(slot.arrives, at.zone)}`,
+  line: 'to have by then',
+  needed: (units: number): string => `needs ${quantity(units)}`,
+  shelf: 'shelf too small',
+  shelfWhat: 'The shelf cannot take all of it. Bring the rest by the latest order, or keep it elsewhere.',
+  columns: { needed: 'To have, estimate', packs: 'Works out at', draft: 'Draft' },
+  why: (row: GapSlot['rows'][number], gap: Gap): string =>
+    `${quantity(row.onHand)} on hand${row.onOrder > 0 ? ` and ${quantity(row.onOrder)} on order` : ''}. An estimated ${quantity(row.needed)} should stand here to last until the delivery after ${gap.name}, at this place’s own aim.`,
+  addAll: (n: number): string => `Add ${n === 1 ? 'it' : `all ${quantity(n)}`} to a draft`,
+  added: (order: Pick<Order, 'number' | 'supplierName'>, n: number): string =>
+    `${counted(n, 'item')} in draft ${order.number} for ${order.supplierName}.`,
+  nothing: 'Everything lasts over it',
+  nothingWhat:
+    'Every counted place of this supplier has enough until the first delivery after it, with what is on order.',
+  none: 'No holiday is near',
+  noneWhat:
+    'From ten days before closed days in a supplier’s calendar, this page says what would not last and by which order to bring it.',
 } as const
 
 export const orderWords = {

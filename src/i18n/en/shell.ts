@@ -1,4 +1,5 @@
 import { counted } from './format.ts'
+import { plannedWords } from './planned-changes.ts'
 
 export const shellWords = {
   places: {
@@ -13,6 +14,7 @@ export const shellWords = {
   },
   /** What a page is called in the tab. */
   titleOf: (place: string | undefined, route: string): string | null => {
+    if (route.startsWith('planned-change')) return plannedWords.title
     if (place) return (shellWords.places as Record<string, string>)[place] ?? null
     return route === 'sign-in' ? 'Sign in' : route === 'password-reset' ? 'New password' : null
   },

@@ -1,3 +1,4 @@
+import { listCalendars } from '#shared/contracts/calendars.ts'
 import { listBins, listItems, listRooms, listSuppliers, listWards } from '#shared/contracts/catalogue.ts'
 import { call } from '#src/services/api.ts'
 import { everyPage } from '#src/services/every-page.ts'
@@ -17,6 +18,7 @@ const readers: Record<PickSource, (page: number) => Promise<{ items: PickOption[
     const { items, total } = await call(listItems, { query: { page, ...all } })
     return { total, items: items.map((item) => ({ value: item.id, label: `${item.name} (${item.code})` })) }
   },
+  calendars: async () => named(await call(listCalendars, { query: {} })),
   bins: async (page) => {
     const { items, total } = await call(listBins, { query: { page, ...all } })
     return {

@@ -25,6 +25,8 @@ export interface RecordField {
   source?: PickSource
   /** Empty means null instead of a missing value. */
   nullable?: boolean
+  /** What an empty pick means; it is then a short list with this as its first choice. */
+  empty?: string
   /** May be left empty: the server then chooses. */
   optional?: boolean
   /** What a new record starts with. */
@@ -35,7 +37,7 @@ export interface RecordField {
   half?: boolean
   autocomplete?: string
 }
-export type PickSource = 'wards' | 'rooms' | 'items' | 'suppliers' | 'bins'
+export type PickSource = 'wards' | 'rooms' | 'items' | 'suppliers' | 'bins' | 'calendars'
 
 export interface Gtin {
   gtin: string

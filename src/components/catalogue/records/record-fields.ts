@@ -1,4 +1,12 @@
-import { fieldWords as w, roleWords, roomModeWords, vedWords, wardKindWords, type RecordKind } from '#src/i18n/en.ts'
+import {
+  calendarWords,
+  fieldWords as w,
+  roleWords,
+  roomModeWords,
+  vedWords,
+  wardKindWords,
+  type RecordKind,
+} from '#src/i18n/en.ts'
 import type { RecordField } from './record-field.ts'
 
 const choices = (words: Record<string, string>): { value: string; label: string }[] =>
@@ -12,6 +20,15 @@ const modes = Object.fromEntries(
 )
 
 const code: RecordField = { name: 'code', type: 'text', ...w.code, half: true }
+const calendar = (words: { label: string; hint: string }): RecordField => ({
+  name: 'calendarId',
+  type: 'pick',
+  ...words,
+  source: 'calendars',
+  nullable: true,
+  empty: calendarWords.theHospitals,
+  half: true,
+})
 const name: RecordField = { name: 'name', type: 'text', ...w.name, half: true }
 
 /** The fields of every kind of record, in the order of the form. */
@@ -21,12 +38,14 @@ export const recordFields: Record<RecordKind, readonly RecordField[]> = {
     code,
     { name: 'kind', type: 'choice', ...w.wardKind, options: choices(wardKindWords), half: true },
     { name: 'site', type: 'text', ...w.site, half: true },
+    calendar(w.wardCalendar),
   ],
   rooms: [
     name,
     code,
     { name: 'wardId', type: 'pick', ...w.wardId, source: 'wards', half: true },
     { name: 'countEveryDays', type: 'decimal', ...w.countEveryDays, start: '7', half: true },
+    { name: 'countDays', type: 'days', ...w.countDays },
     { name: 'mode', type: 'choice', ...w.mode, options: choices(modes) },
   ],
   items: [
@@ -68,6 +87,7 @@ export const recordFields: Record<RecordKind, readonly RecordField[]> = {
     { name: 'leadWorkingDays', type: 'whole', ...w.leadWorkingDays, start: '1', half: true },
     { name: 'arrivalDays', type: 'days', ...w.arrivalDays },
     { name: 'arrivalTime', type: 'time', ...w.arrivalTime, start: '14:00', half: true },
+    calendar(w.supplierCalendar),
     { name: 'minimumOrder', type: 'decimal', ...w.minimumOrder, start: '0', half: true },
     { name: 'leadTimeDays', type: 'decimal', ...w.leadTimeDays, nullable: true, half: true },
     { name: 'leadTimeSd', type: 'decimal', ...w.leadTimeSd, nullable: true, half: true },

@@ -24,6 +24,7 @@ import {
 import type { Contract, Role } from '#shared/contracts/contract.ts'
 import { createUser, listUsers, updateUser, type UserRecord } from '#shared/contracts/people.ts'
 import {
+  calendarWords,
   decimal,
   hospitalWords,
   quantity,
@@ -50,6 +51,8 @@ export interface KindOfRecord {
   fields: readonly RecordField[]
   columns: readonly { label: string; of: (row: AnyRecord) => string; number?: boolean }[]
   nameOf: (row: AnyRecord) => string
+  /** A sentence on what the record shows of it, below its name. */
+  factsOf?: (row: AnyRecord) => string
 }
 export type AnyRecord = Record<string, unknown> & { id: string; retired: boolean }
 
@@ -65,6 +68,7 @@ function kindOf<T extends { id: string; retired: boolean }>(parts: {
   update: unknown
   columns: readonly { label: string; of: (row: T) => string; number?: boolean }[]
   nameOf: (row: T) => string
+  factsOf?: (row: T) => string
 }): KindOfRecord {
   return {
     roles: editors,
@@ -121,6 +125,7 @@ export const recordKinds: Record<RecordKind, KindOfRecord> = {
     create: createSupplier,
     update: updateSupplier,
     nameOf: (s) => s.name,
+    factsOf: (s) => calendarWords.deliveriesSeen(s.seen),
     columns: [
       { label: c.name, of: (s) => s.name },
       { label: c.code, of: (s) => s.code },

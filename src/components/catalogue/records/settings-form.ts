@@ -1,5 +1,5 @@
 import type { Hospital } from '#shared/contracts/hospital.ts'
-import { fieldWords as w, oddsIn } from '#src/i18n/en.ts'
+import { calendarWords, fieldWords as w, oddsIn } from '#src/i18n/en.ts'
 import type { FormValues, RecordField } from './record-field.ts'
 
 const aim = (name: string, label: string): RecordField => ({ name, type: 'whole', label, suffix: w.cycles, half: true })
@@ -16,6 +16,16 @@ export const settingsFields: readonly RecordField[] = [
     half: true,
   },
   { name: 'currency', type: 'text', ...w.currency, half: true },
+  {
+    name: 'calendarId',
+    type: 'pick',
+    ...w.hospitalCalendar,
+    source: 'calendars',
+    nullable: true,
+    empty: calendarWords.noCalendar,
+    half: true,
+  },
+  { name: 'pooling', type: 'check', ...w.pooling, half: true },
   aim('levelV', w.levelV.label),
   aim('levelE', w.levelE.label),
   aim('levelD', w.levelD.label),
@@ -35,6 +45,7 @@ const toLevel = (n: unknown): number => Math.round((1 - 1 / Number(n)) * 1e6) / 
 export function settingsValues(hospital: Hospital): FormValues {
   return {
     ...hospital,
+    calendarId: hospital.calendarId ?? '',
     levelV: toOdds(hospital.levels.V),
     levelE: toOdds(hospital.levels.E),
     levelD: toOdds(hospital.levels.D),
