@@ -8,6 +8,7 @@ import * as calendars from './calendars.service.ts'
 import * as hospital from './hospital.service.ts'
 import * as items from './items.service.ts'
 import * as places from './places.service.ts'
+import * as roomLevels from './room-levels.service.ts'
 
 export function catalogueRoutes(routes: Routes): void {
   routes.read(h.readHospital, ({ tx }) => hospital.readHospital(tx))
@@ -23,6 +24,13 @@ export function catalogueRoutes(routes: Routes): void {
   routes.write(c.createRoom, ({ tx, clock, actor, body }) => places.createRoom(tx, clock, actor.id, body))
   routes.write(c.updateRoom, ({ tx, clock, actor, params, body }) =>
     places.updateRoom(tx, clock, actor, Number(params.id), body),
+  )
+
+  routes.read(c.readRoomLevels, ({ tx, clock, actor, params }) =>
+    roomLevels.readRoomLevels(tx, clock, actor, Number(params.id)),
+  )
+  routes.write(c.setRoomMode, ({ tx, clock, actor, params, body }) =>
+    roomLevels.setRoomMode(tx, clock, actor, Number(params.id), body),
   )
 
   routes.read(c.listSuppliers, ({ tx, query }) => places.listSuppliers(tx, query))

@@ -1,7 +1,7 @@
 import { and, asc, avg, count, eq, inArray, isNotNull, isNull, like, min, or, sql, type SQL } from 'drizzle-orm'
 import type { Reader, Tx } from '../db/client.ts'
 import { leadTimeObservations } from '../policy/policy.tables.ts'
-import { bins, hospitals, rooms, suppliers, wards } from './catalogue.tables.ts'
+import { binAssignments, bins, hospitals, items, rooms, suppliers, wards } from './catalogue.tables.ts'
 
 export interface ListFilter {
   q?: string
@@ -100,6 +100,16 @@ export async function liveBinsOfRoom(db: Reader, roomId: number): Promise<number
     .select({ id: bins.id })
     .from(bins)
     .where(and(eq(bins.roomId, roomId), isNull(bins.retiredAt)))
+  return rows.map((r) => r.id)
+}
+
+export async function vitalBinsOfRoom(db: Reader, roomId: number): Promise<number[]> {
+  const rows = await db
+    .select({ id: bins.id })
+    .from(bins)
+    .innerJoin(binAssignments, and(eq(binAssignments.binId, bins.id), isNull(binAssignments.assignedTo)))
+    .innerJoin(items, eq(items.id, binAssignments.itemId))
+    .where(and(eq(bins.roomId, roomId), isNull(bins.retiredAt), eq(items.ved, 'V')))
   return rows.map((r) => r.id)
 }
 

@@ -149,7 +149,7 @@ export async function listRooms(db: Reader, clock: Clock, actor: Actor, query: L
   return listAnswer(items, total, query)
 }
 
-async function oneRoom(db: Reader, clock: Clock, id: number): Promise<Room> {
+export async function oneRoom(db: Reader, clock: Clock, id: number): Promise<Room> {
   const row = await repo.findRoom(db, id)
   if (!row) throw problem('not-found')
   const { timeZone } = await readHospital(db)
@@ -215,14 +215,18 @@ export async function updateRoom(
     before,
     after: input,
   })
-  const cause =
-    input.mode !== undefined && input.mode !== before.mode
-      ? 'mode'
-      : input.countEveryDays !== undefined || input.countDays !== undefined
-        ? 'rhythm'
-        : null
-  await touchBins(tx, clock.now(), bins, cause)
+  if (input.mode !== undefined && input.mode !== before.mode) await touchForMode(tx, clock.now(), actor, id)
+  const rhythm = input.countEveryDays !== undefined || input.countDays !== undefined || wardId !== undefined
+  await touchBins(tx, clock.now(), bins, rhythm ? 'rhythm' : null)
   return oneRoom(tx, clock, id)
+}
+
+/** A room is kept another way: for its vital items that is a yes only when the reviewer says it. */
+export async function touchForMode(tx: Tx, now: Date, actor: Pick<Actor, 'role'>, roomId: number): Promise<void> {
+  const vital = await repo.vitalBinsOfRoom(tx, roomId)
+  const others = (await repo.liveBinsOfRoom(tx, roomId)).filter((binId) => !vital.includes(binId))
+  await touchBins(tx, now, others, 'mode')
+  await touchBins(tx, now, vital, actor.role === 'reviewer' ? 'mode' : 'mode-vital')
 }
 
 // Suppliers -------------------------------------------------------------------------------------------------------

@@ -4,8 +4,6 @@ import { contract, DateOnly, Id, idParams, listOf, text } from './contract.ts'
 const editors = ['coordinator', 'administrator'] as const
 /** So many days a calendar holds. */
 export const mostDays = 2_000
-/** A file of 1 MB, its text escaped, or two thousand named days. */
-const largest = 2 * 1024 * 1024
 
 export const CalendarDay = z.strictObject({ date: DateOnly, name: z.string().trim().max(120) })
 export type CalendarDay = z.infer<typeof CalendarDay>

@@ -1,7 +1,7 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import { parseShelfCode } from '#shared/barcode/shelf-code.ts'
 import type { Bin } from '#shared/contracts/bins.ts'
-import type { Item, Room } from '#shared/contracts/catalogue.ts'
+import type { Item, Room, RoomLevels } from '#shared/contracts/catalogue.ts'
 import { startTestApp, type Caller, type TestApp } from '../support/app.ts'
 import { makeBin, makeItem, makeRoom, makeSupplier, operation, sync } from '../support/factories.ts'
 
@@ -178,5 +178,73 @@ describe('the hospital', () => {
     const changed = await admin.patch('/hospital', { binWord: 'place', levels: { V: 0.998, E: 0.98, D: 0.95 } })
     expect(changed.body).toMatchObject({ binWord: 'place', levels: { V: 0.998 } })
     expect((await (await app.as('nurse')).get('/hospital')).body.binWord).toBe('place')
+  })
+})
+
+describe('how a room is kept', () => {
+  let room: Room
+  let vital: Bin
+  let other: Bin
+
+  /** Ten counts a day apart, each one lower: one a day is used. */
+  async function counted(bins: Bin[]): Promise<void> {
+    const start = Date.parse('2026-11-02T09:00:00Z')
+    for (let day = 0; day < 10; day += 1) {
+      app.clock.set(new Date(start + day * 86_400_000))
+      const nurse = await app.as('nurse')
+      await sync(
+        app,
+        nurse,
+        bins.map((bin) => operation(app, { type: 'count', binId: bin.id, quantity: 30 - day })),
+      )
+    }
+    await app.runJobs()
+    coordinator = await app.as('coordinator')
+  }
+  const inForce = async (bin: Bin): Promise<number> =>
+    ((await coordinator.get(`/bins/${bin.id}`)).body as Bin).reorderPoint!
+
+  beforeAll(async () => {
+    room = await makeRoom(app, { mode: 'beside' })
+    const levels = { roomId: room.id, enteredReorderPoint: 25, enteredPar: 40 }
+    vital = await makeBin(app, { ...levels, itemId: (await makeItem(app, { ved: 'V' })).id })
+    other = await makeBin(app, { ...levels, itemId: (await makeItem(app, { ved: 'D' })).id })
+    await makeBin(app, { ...levels, itemId: item.id })
+    await counted([vital, other])
+  }, 60_000)
+
+  it('stands side by side with what is worked out, before anybody decides', async () => {
+    expect((await coordinator.get('/rooms/999999/levels')).status).toBe(404)
+    expect((await (await app.as('nurse')).get(`/rooms/${room.id}/levels`)).status).toBe(403)
+    const levels = (await coordinator.get(`/rooms/${room.id}/levels`)).body as RoomLevels
+    expect(levels).toMatchObject({ places: 2, rise: 0, fall: 2, vital: 1, entered: 1 })
+    // The vital item has the higher aim, so its level falls less; the wider difference stands first.
+    expect(levels.rows.map((r) => [r.bin.id, r.entered, r.waitsForReviewer])).toEqual([
+      [other.id, 25, false],
+      [vital.id, 25, true],
+    ])
+    expect(levels.rows[0]!.difference).toBe(levels.rows[0]!.calculated - 25)
+    expect(levels.rows[0]!.difference).toBeLessThan(levels.rows[1]!.difference)
+  })
+
+  it('is moved by a coordinator, the vital items by the reviewer alone', async () => {
+    const at = `/rooms/${room.id}/mode`
+    expect((await coordinator.post('/rooms/999999/mode', { mode: 'calculated' })).status).toBe(404)
+    expect((await (await app.as('nurse')).post(at, { mode: 'calculated' })).status).toBe(403)
+    expect(pointer(await coordinator.post(at, { mode: 'tidy' }))).toEqual([422, '/mode'])
+    for (const _again of [1, 2]) {
+      expect((await coordinator.post(at, { mode: 'calculated' })).body.room.mode).toBe('calculated')
+      await app.runJobs()
+      expect(await inForce(other)).toBeLessThan(25)
+      expect(await inForce(vital)).toBe(25)
+    }
+    const reviewer = await app.as('reviewer')
+    expect((await reviewer.post(at, { mode: 'calculated', reason: 'Looked at together.' })).body.vital).toBe(1)
+    await app.runJobs()
+    expect(await inForce(vital)).toBeLessThan(25)
+    expect((await reviewer.get(`/rooms/${room.id}/levels`)).body.vital).toBe(0)
+    expect((await coordinator.patch(`/rooms/${room.id}`, { mode: 'as-before' })).body.mode).toBe('as-before')
+    await app.runJobs()
+    expect([await inForce(vital), await inForce(other)]).toEqual([25, 25])
   })
 })
