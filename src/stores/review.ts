@@ -5,8 +5,10 @@ import {
   endServiceLevel,
   listReview,
   readBinPolicy,
+  readClassOutlook,
   setServiceLevel,
   type BinPolicy,
+  type ClassOutlook,
   type ReviewRow,
 } from '#shared/contracts/policy.ts'
 import { call } from '#src/services/api.ts'
@@ -25,9 +27,14 @@ export interface AimChange {
 export const useReviewStore = defineStore('review', () => {
   const rows = shallowRef<ReviewRow[] | null>(null)
   const show = ref<ReviewShow>('vital')
+  const classes = shallowRef<ClassOutlook[] | null>(null)
 
   async function loadRows(filter: { show: ReviewShow; roomId?: string }, signal?: AbortSignal): Promise<void> {
     rows.value = await everyPage((page) => call(listReview, { query: { ...filter, page, pageSize: 500 }, signal }))
+  }
+
+  async function loadClasses(signal?: AbortSignal): Promise<void> {
+    classes.value = (await call(readClassOutlook, { signal })).items
   }
 
   const policyOf = (binId: string, signal?: AbortSignal): Promise<BinPolicy> =>
@@ -43,7 +50,8 @@ export const useReviewStore = defineStore('review', () => {
 
   useSessionStore().onClearReads(() => {
     rows.value = null
+    classes.value = null
   })
 
-  return { rows, show, loadRows, policyOf, setAim, endAim, decide }
+  return { rows, show, classes, loadRows, loadClasses, policyOf, setAim, endAim, decide }
 })

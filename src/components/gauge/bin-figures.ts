@@ -14,5 +14,7 @@ export function binFigures(bin: Bin, more: { waiting?: boolean } = {}): GaugeFig
     old: bin.states.includes('count-overdue'),
     countFirst: bin.states.includes('count-first'),
     waiting: more.waiting ?? false,
+    holiday: bin.gap?.level ?? null,
+    closed: bin.closed !== null,
   }
 }

@@ -25,6 +25,10 @@ export interface GaugeFigures {
   last?: number | null
   /** The usual range of a count, as a bracket below the bar. */
   usual?: { from: number; to: number } | null
+  /** What should stand here before a holiday, for a time only. */
+  holiday?: number | null
+  /** Shut for a planned time: nothing is short then. */
+  closed?: boolean
 }
 
 export interface GaugeOptions {
@@ -56,6 +60,8 @@ export interface GaugeShape {
   par: { x: number } | null
   last: { x: number } | null
   usual: { from: number; to: number } | null
+  /** Foot of the pennant at the level to have before a holiday; `beyond`: it lies past twice the line. */
+  holiday: { x: number; beyond: boolean } | null
   /** Position ÷ reorder point when it is more than twice, else null. */
   times: number | null
 }
@@ -66,6 +72,10 @@ const OLD = { length: 26, gap: 3, slices: 3 }
 const NOTCH = { width: 10, depth: 7, before: 12 }
 const BREAK = { before: 26, gap: 5, slant: 5 }
 const STUB = 2
+/** "N under" stands so far right of the line. */
+const UNDER_WORDS = 112
+/** Width of the pennant of a holiday. */
+export const PENNANT = 9
 
 /** Whether a reorder point is small enough to draw every unit. */
 export const drawsUnits = (reorderPoint: number | null): boolean =>
@@ -198,6 +208,7 @@ const blank = (lineX: number): GaugeShape => ({
   par: null,
   last: null,
   usual: null,
+  holiday: null,
   times: null,
 })
 
@@ -257,6 +268,21 @@ function drawOnOrder(shape: GaugeShape, options: GaugeOptions, from: number, to:
     to > width ? openBroken(start, width, h, shape.lineX, closedLeft) : open(start, to, h, shape.lineX, closedLeft)
 }
 
+/** More marks than these nobody reads at a glance; what is left out stands in the words. */
+const MOST_MARKS = 3
+
+/** The level to have before a holiday, where it tells more than the line itself and the row has room for one mark more. */
+function holidayMark(figures: GaugeFigures, shape: GaugeShape, scale: number, width: number): GaugeShape['holiday'] {
+  const { holiday, reorderPoint } = figures
+  if (holiday == null || holiday <= (reorderPoint ?? 0)) return null
+  const bar = shape.solid.length > 0 || shape.outline.length > 0
+  const others = [bar, shape.hatch, figures.onOrder > 0, figures.old, figures.held, figures.waiting, shape.question]
+  if (others.filter(Boolean).length >= MOST_MARKS) return null
+  const beyond = holiday * scale > width - PENNANT
+  if (shape.hatch && Math.min(holiday * scale, width - PENNANT) < shape.lineX + UNDER_WORDS) return null
+  return { x: beyond ? width - PENNANT : holiday * scale, beyond }
+}
+
 /** Works out every mark of one gauge. */
 export function gaugeShape(figures: GaugeFigures, options: GaugeOptions): GaugeShape {
   const { width, bar: h } = options
@@ -290,7 +316,7 @@ export function gaugeShape(figures: GaugeFigures, options: GaugeOptions): GaugeS
       drawOnOrder(shape, options, from, drawnTo)
     }
     const square = held && figures.onOrder === 0
-    if (position < reorderPoint && !options.noGap)
+    if (position < reorderPoint && !options.noGap && !figures.closed)
       shape.hatch = hatchFrom(
         Math.max(drawnTo, figures.onHand === 0 && figures.onOrder === 0 ? STUB : 0),
         lineX,
@@ -301,6 +327,8 @@ export function gaugeShape(figures: GaugeFigures, options: GaugeOptions): GaugeS
   if (figures.parLevel != null && figures.parLevel > reorderPoint && figures.parLevel <= 2 * reorderPoint) {
     shape.par = { x: at(figures.parLevel) }
   }
+  shape.holiday = holidayMark(figures, shape, scale, width)
+  if (shape.holiday) shape.par = null
   if (figures.last != null) shape.last = { x: at(figures.last) }
   if (figures.usual) shape.usual = { from: at(figures.usual.from), to: at(figures.usual.to) }
   return shape

@@ -48,9 +48,3 @@ export function aimSteps(
     ]
   })
 }
-
-/** Delivery cycles a year of one place: what it uses over what it orders at a time. */
-export function cyclesPerYear(meanPerDay: number, orderQuantity: number | null): number | null {
-  if (!(meanPerDay > 0) || !orderQuantity) return null
-  return (meanPerDay * 365) / orderQuantity
-}

@@ -1,5 +1,8 @@
+import { DateTime } from 'luxon'
+import type { Bin } from '#shared/contracts/bins.ts'
 import type { GaugeFigures } from '#src/components/gauge/gauge-geometry.ts'
-import { ageOfCount, dueOn, quantity } from './format.ts'
+import type { Moment } from './catalogue.ts'
+import { ageOfCount, dateOf, dueOn, quantity, shortDay } from './format.ts'
 
 /** Units below the reorder point; 0 when at or above it. */
 export const underOf = (figures: Pick<GaugeFigures, 'onHand' | 'onOrder' | 'reorderPoint'>): number =>
@@ -9,6 +12,10 @@ export const underOf = (figures: Pick<GaugeFigures, 'onHand' | 'onOrder' | 'reor
 
 const isAtPoint = (f: GaugeFigures): boolean =>
   f.reorderPoint !== null && f.onHand !== null && f.onHand + f.onOrder === f.reorderPoint
+
+/** "Thu 23 Dec": a day people plan for, with both of its names. */
+export const plannedDay = (iso: string, at: Pick<Moment, 'zone'>): string =>
+  DateTime.fromISO(iso, { zone: at.zone }).setLocale('en-GB').toFormat('ccc d LLL')
 
 /** The words of the shared line, for lists, pages and the text alternative. */
 export const gaugeWords = {
@@ -33,6 +40,17 @@ export const gaugeWords = {
   counted: (days: number): string => ageOfCount(days),
   empty: (onOrder: number, expectedOn: string | null, today: string): string =>
     onOrder > 0 ? `Empty, ${quantity(onOrder)} due${expectedOn ? ` ${dueOn(expectedOn, today)}` : ''}` : 'Empty',
+  /** A planned closure: "closed until 3 May". */
+  closed: (until: string | null, at: Moment): string =>
+    until === null ? 'closed until further notice' : `closed until ${shortDay(dateOf(until, at.zone))}`,
+  /** What to have before a holiday: "42 by Thu 23 Dec for Christmas". */
+  gap: (gap: NonNullable<Bin['gap']>, at: Moment): string =>
+    `${quantity(gap.level)} by ${plannedDay(gap.orderBy, at)} for ${gap.name}`,
+  /** What holds of a place for a time only; null on an ordinary day. */
+  passing: (bin: Pick<Bin, 'closed' | 'gap'>, at: Moment): string | null => {
+    if (bin.closed) return gaugeWords.closed(bin.closed.until, at)
+    return bin.gap ? gaugeWords.gap(bin.gap, at) : null
+  },
   usual: (from: number, to: number): string => `usual ${quantity(from)} to ${quantity(to)}`,
 
   /** What stands right of the line: only ever there when the bar does not reach it. */
@@ -40,7 +58,7 @@ export const gaugeWords = {
     if (figures.onHand === null) return gaugeWords.neverCounted
     if (figures.reorderPoint === null) return gaugeWords.noPoint
     // By the record its bar passes the line, so these words have no room here.
-    if (figures.countFirst) return null
+    if (figures.countFirst || figures.closed) return null
     const under = underOf(figures)
     if (under > 0) return gaugeWords.under(under)
     return isAtPoint(figures) ? gaugeWords.atPoint : null
@@ -58,9 +76,11 @@ export const gaugeWords = {
       figures.onOrder > 0 ? `${quantity(figures.onOrder)} on order` : 'none on order',
       figures.reorderPoint === null ? 'no reorder point yet' : `reorder point ${quantity(figures.reorderPoint)}`,
     ]
-    const under = underOf(figures)
+    const under = figures.closed ? 0 : underOf(figures)
     if (under > 0) parts.push(gaugeWords.under(under))
-    else if (isAtPoint(figures)) parts.push(gaugeWords.atPoint)
+    else if (!figures.closed && isAtPoint(figures)) parts.push(gaugeWords.atPoint)
+    if (figures.closed) parts.push('closed')
+    if (figures.holiday != null) parts.push(`${quantity(figures.holiday)} before the holidays`)
     if (figures.held) parts.push(gaugeWords.held(figures.held))
     if (figures.countFirst) parts.push(gaugeWords.countFirst)
     if (figures.old) parts.push('old count')

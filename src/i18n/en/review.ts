@@ -1,7 +1,15 @@
-import type { ReviewRow } from '#shared/contracts/policy.ts'
+import type { ClassOutlook, ReviewRow } from '#shared/contracts/policy.ts'
+import { vedWords } from './common.ts'
 import { counted, day, decimal, money, odds, oddsIn, onceIn, percent, quantity, signed } from './format.ts'
 
-export type ReviewShow = 'due' | 'proposed' | 'vital' | 'moved' | 'all'
+export type ReviewShow = 'due' | 'proposed' | 'vital' | 'moved' | 'asked' | 'all'
+
+/** Run-outs in a year, or how many years to one; an estimate, so in round numbers. */
+function perYear(runOuts: number): string {
+  if (runOuts >= 0.75) return `about ${counted(Math.round(runOuts), 'run-out')} a year`
+  if (runOuts < 0.01) return 'less than 1 run-out in 100 years'
+  return `about 1 run-out in ${quantity(Math.round(1 / runOuts))} years`
+}
 
 export const reviewWords = {
   title: 'Review',
@@ -11,6 +19,7 @@ export const reviewWords = {
     due: 'Due for review',
     proposed: 'Proposed',
     moved: 'Moved',
+    asked: 'Asked about',
     all: 'All',
   } satisfies Record<ReviewShow, string>,
   which: 'Show',
@@ -41,6 +50,18 @@ export const reviewWords = {
     row.proposal
       ? `${row.proposal.own ? 'you propose' : `${row.proposal.byName} proposes`} 1 in ${quantity(oddsIn(row.proposal.level))}`
       : '',
+  questions: (n: number): string => `${counted(n, 'unusual stretch')}: what was it?`,
+  classes: 'What these aims come to, an estimate',
+  className: (row: ClassOutlook): string => {
+    const name = vedWords[row.ved]
+    return `${name.charAt(0).toUpperCase()}${name.slice(1)}`
+  },
+  classPlaces: (row: ClassOutlook): string =>
+    row.workedOut === row.places
+      ? counted(row.places, 'place')
+      : `${counted(row.places, 'place')}, ${quantity(row.workedOut)} worked out`,
+  classRunOuts: (row: ClassOutlook): string =>
+    row.workedOut === 0 ? 'nothing worked out yet' : perYear(row.runOutsPerYear),
   none: 'Nothing here',
   noneWhat: (show: ReviewShow): string =>
     show === 'all'

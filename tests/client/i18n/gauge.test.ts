@@ -16,6 +16,24 @@ describe('the gauge in words', () => {
     expect(gaugeWords.alternative({ onHand: null, onOrder: 0, reorderPoint: 10 })).toBe(
       'never counted, reorder point 10',
     )
+    expect(gaugeWords.alternative({ onHand: 14, onOrder: 0, reorderPoint: 20, closed: true })).toBe(
+      '14 on hand, none on order, reorder point 20, closed',
+    )
+    expect(gaugeWords.alternative({ onHand: 24, onOrder: 0, reorderPoint: 20, holiday: 42 })).toContain(
+      '42 before the holidays',
+    )
+  })
+
+  it('says what holds for a time only, by the hospital’s own days', () => {
+    const gap = { level: 42, orderBy: '2026-12-23T10:00:00.000Z', name: 'Christmas' }
+    expect(gaugeWords.passing({ closed: null, gap }, at)).toBe('42 by Wed 23 Dec for Christmas')
+    // Midnight of 3 May in London is the evening before in UTC.
+    const closed = { from: '2026-12-01T00:00:00.000Z', until: '2027-05-02T23:00:00.000Z' }
+    expect(gaugeWords.passing({ closed, gap }, at)).toBe('closed until 3 May')
+    expect(gaugeWords.passing({ closed: { ...closed, until: null }, gap: null }, at)).toBe(
+      'closed until further notice',
+    )
+    expect(gaugeWords.passing({ closed: null, gap: null }, at)).toBeNull()
   })
 
   it('puts "N under" beside the line only when the bar stops short of it', () => {

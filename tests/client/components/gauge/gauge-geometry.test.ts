@@ -91,6 +91,23 @@ describe('gaugeShape', () => {
     expect(Math.min(...shape.solid.flatMap(xs))).toBeGreaterThanOrEqual(line)
   })
 
+  it('puts the level for a holiday where it belongs, in the place of par, and never under the words', () => {
+    expect(draw({ onHand: 26, holiday: 30, parLevel: 38 })).toMatchObject({ holiday: { x: 1.5 * line }, par: null })
+    expect(draw({ onHand: 26, holiday: 90 }).holiday).toMatchObject({ beyond: true })
+    expect(draw({ onHand: 26, holiday: 18 }).holiday).toBeNull()
+    // "6 under" stands right of the line.
+    expect(draw({ onHand: 14, holiday: 30 }).holiday).toBeNull()
+  })
+
+  it('draws at most three marks: a holiday is then in the words only', () => {
+    expect(draw({ onHand: 18, onOrder: 6, holiday: 30 }).holiday).not.toBeNull()
+    expect(draw({ onHand: 18, onOrder: 6, old: true, holiday: 30 }).holiday).toBeNull()
+  })
+
+  it('hatches nothing while a place is closed', () => {
+    expect(draw({ onHand: 3, closed: true }).hatch).toBeNull()
+  })
+
   it('draws the par pole only up to twice the line', () => {
     expect(draw({ parLevel: 30 }).par?.x).toBeCloseTo(1.5 * line)
     expect(draw({ parLevel: 41 }).par).toBeNull()

@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest'
 import type { Movement } from '#shared/contracts/bins.ts'
-import { pictureOf, STRETCHES } from '#src/components/policy/demand-picture.ts'
+import { figuresOf, pictureOf, stretchesFor } from '#src/components/policy/demand-picture.ts'
+import { dotGeometry } from '#src/components/policy/dot-geometry.ts'
 import { levelChart, niceStep } from '#src/components/policy/level-chart.ts'
 
 const HOUR = 3_600_000
@@ -47,7 +48,36 @@ describe('pictureOf', () => {
     const picture = pictureOf((units) => Math.min(1, (units + 1) / 400), 307)
     expect(picture.step).toBeGreaterThan(1)
     expect(picture.columns.every((c) => c.upTo <= 307 || c.units > 307)).toBe(true)
-    expect(picture.columns.reduce((sum, c) => sum + c.dots, 0)).toBe(STRETCHES)
+    expect(picture.columns.reduce((sum, c) => sum + c.dots, 0)).toBe(200)
+  })
+})
+
+describe('the risk in the picture', () => {
+  // Uniform on 0..999: one unit in a thousand each.
+  const even = (units: number): number => Math.min(1, (units + 1) / 1000)
+
+  it('takes so many dots that a rare risk still shows one', () => {
+    expect([0.2, 0.005, 0.0026].map(stretchesFor)).toEqual([200, 200, 200])
+    expect(stretchesFor(0.001)).toBe(1000)
+    expect(figuresOf(even, 998, 998).picture).toMatchObject({ stretches: 1000, beyond: 1 })
+  })
+
+  it('knows what the level reaches, what one unit less would, and the middle of the use', () => {
+    const figures = figuresOf(even, 994, 994)
+    expect(figures.reached).toBeCloseTo(0.995)
+    expect(figures.short).toBeCloseTo(0.994)
+    expect(figures.risk).toBeCloseTo(0.005)
+    expect([figures.tenth, figures.half, figures.nineTenths]).toEqual([99, 499, 899])
+    expect(figuresOf(even, 0, 0).short).toBeNull()
+  })
+
+  it('draws every dot of the risk right of the line, and no other', () => {
+    for (const point of [4, 37, 640, 998]) {
+      const { picture } = figuresOf(even, point, point)
+      const drawn = dotGeometry(picture, point, null, 358)
+      expect(drawn.dots.filter((dot) => dot.cx > drawn.line)).toHaveLength(picture.beyond)
+      expect(drawn.line).toBeLessThan(358 - 80)
+    }
   })
 })
 

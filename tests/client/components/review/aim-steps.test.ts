@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest'
 import { reorderPoint } from '#shared/policy/reorder-point.ts'
 import { levelSteps } from '#shared/policy/service-level-steps.ts'
-import { aimSteps, cyclesPerYear } from '#src/components/review/aim-steps.ts'
+import { aimSteps } from '#src/components/review/aim-steps.ts'
 import { reviewDays } from '#src/components/review/review-days.ts'
 
 const input = {
@@ -39,11 +39,6 @@ describe('aims', () => {
   it('has no cost without a price', () => {
     const [step] = aimSteps(reorderPoint, input, [0.99], { level: 0.98, reorderPoint: 25 }, null)
     expect(step?.cost).toBeNull()
-  })
-
-  it('knows how often a place is delivered to', () => {
-    expect(cyclesPerYear(2, 50)).toBeCloseTo(14.6)
-    expect(cyclesPerYear(0, 50)).toBeNull()
   })
 })
 
