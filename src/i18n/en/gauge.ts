@@ -1,8 +1,12 @@
 import { DateTime } from 'luxon'
 import type { Bin } from '#shared/contracts/bins.ts'
 import type { GaugeFigures } from '#src/components/gauge/gauge-geometry.ts'
-import type { Moment } from './catalogue.ts'
 import { ageOfCount, dateOf, dueOn, quantity, shortDay } from './format.ts'
+
+/** Where days are said: the hospital's zone. */
+interface Zoned {
+  zone: string
+}
 
 /** Units below the reorder point; 0 when at or above it. */
 export const underOf = (figures: Pick<GaugeFigures, 'onHand' | 'onOrder' | 'reorderPoint'>): number =>
@@ -14,7 +18,7 @@ const isAtPoint = (f: GaugeFigures): boolean =>
   f.reorderPoint !== null && f.onHand !== null && f.onHand + f.onOrder === f.reorderPoint
 
 /** "Thu 23 Dec": a day people plan for, with both of its names. */
-export const plannedDay = (iso: string, at: Pick<Moment, 'zone'>): string =>
+export const plannedDay = (iso: string, at: Zoned): string =>
   DateTime.fromISO(iso, { zone: at.zone }).setLocale('en-GB').toFormat('ccc d LLL')
 
 /** The words of the shared line, for lists, pages and the text alternative. */
@@ -41,13 +45,13 @@ export const gaugeWords = {
   empty: (onOrder: number, expectedOn: string | null, today: string): string =>
     onOrder > 0 ? `Empty, ${quantity(onOrder)} due${expectedOn ? ` ${dueOn(expectedOn, today)}` : ''}` : 'Empty',
   /** A planned closure: "closed until 3 May". */
-  closed: (until: string | null, at: Moment): string =>
+  closed: (until: string | null, at: Zoned): string =>
     until === null ? 'closed until further notice' : `closed until ${shortDay(dateOf(until, at.zone))}`,
   /** What to have before a holiday: "42 by Thu 23 Dec for Christmas". */
-  gap: (gap: NonNullable<Bin['gap']>, at: Moment): string =>
+  gap: (gap: NonNullable<Bin['gap']>, at: Zoned): string =>
     `${quantity(gap.level)} by ${plannedDay(gap.orderBy, at)} for ${gap.name}`,
   /** What holds of a place for a time only; null on an ordinary day. */
-  passing: (bin: Pick<Bin, 'closed' | 'gap'>, at: Moment): string | null => {
+  passing: (bin: Pick<Bin, 'closed' | 'gap'>, at: Zoned): string | null => {
     if (bin.closed) return gaugeWords.closed(bin.closed.until, at)
     return bin.gap ? gaugeWords.gap(bin.gap, at) : null
   },
