@@ -1,4 +1,5 @@
 import { computed, onScopeDispose, ref, shallowRef } from 'vue'
+import type { Bin } from '#shared/contracts/bins.ts'
 import type { Room } from '#shared/contracts/catalogue.ts'
 import type { RoundDraft } from '#shared/stored/draft/index.ts'
 import { draftsOf } from '#src/services/drafts.ts'
@@ -18,10 +19,15 @@ export interface RoundRoom {
   dueBins: LocalBin[]
   bins: LocalBin[]
   minutes: number
+  /** Every place is shut for a planned time. */
+  closed: Bin['closed']
   keptAt: number | null
   /** A round left in the middle. */
   open: { done: number; of: number } | null
 }
+
+const closureOf = (bins: readonly LocalBin[]): Bin['closed'] =>
+  bins.every((bin) => bin.closed) ? (bins[0]?.closed ?? null) : null
 
 /** Every room of this person with what is due in it, from the phone first, then from the record. */
 export function useRoundRooms() {
@@ -49,6 +55,7 @@ export function useRoundRooms() {
           dueBins: due,
           bins,
           minutes: minutesFor(due.length),
+          closed: closureOf(bins),
           keptAt: kept?.fetchedAt ?? null,
           open: draft && done > 0 ? { done, of: draft.walk.length } : null,
         }

@@ -1,4 +1,4 @@
-import type { Bin } from '#shared/contracts/bins.ts'
+import type { Bin, BinState } from '#shared/contracts/bins.ts'
 import type { SnapshotOpenLine } from '#shared/contracts/counts.ts'
 import { binStatesOf, position, under, type BinFacts } from '#shared/ledger/bin-states.ts'
 import type { OutboxEntry } from '#shared/stored/outbox/index.ts'
@@ -50,9 +50,22 @@ function applyOne(bin: LocalBin, entry: OutboxEntry): LocalBin {
   return { ...bin, onHand: Math.max(0, bin.onHand + sign * number(entry)), onOrder, waiting: bin.waiting || unsent }
 }
 
+/**
+ * The planned closure that is on at a moment, also when the copy is older than its end. What the record flags in a
+ * closed place serves the reopening, so such a place is not quiet any more.
+ */
+function closureAt(bin: Bin, now: number): { closed: Bin['closed']; isQuiet: boolean } {
+  const { closed } = bin
+  const isOn =
+    closed !== null && Date.parse(closed.from) <= now && (closed.until === null || now < Date.parse(closed.until))
+  return { closed: isOn ? closed : null, isQuiet: isOn && !bin.states.some((state) => flags.has(state)) }
+}
+const flags: ReadonlySet<BinState> = new Set(['below', 'count-first', 'count-overdue'])
+
 /** Position and states anew: counts grow old and expected use goes on, also without a network. */
 function stateAt(bin: LocalBin, meanPerDay: number | null, now: number): LocalBin {
   const { lastCount, reorderPoint, onHand, onOrder } = bin
+  const { closed, isQuiet } = closureAt(bin, now)
   const facts: BinFacts = {
     kind: bin.kind,
     isOverflow: bin.overflowOf !== null,
@@ -65,8 +78,9 @@ function stateAt(bin: LocalBin, meanPerDay: number | null, now: number): LocalBi
     reorderPoint,
     meanPerDay,
     countEveryDays: bin.countEveryDays,
+    isQuiet,
   }
-  return { ...bin, position: position(facts), under: under(facts), states: binStatesOf(facts, now) }
+  return { ...bin, closed, position: position(facts), under: under(facts), states: binStatesOf(facts, now) }
 }
 
 /**

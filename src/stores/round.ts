@@ -18,6 +18,8 @@ export type DueReason = 'never-counted' | 'count-first' | 'count-overdue' | 'dai
 
 export function dueReason(bin: LocalBin, now: number): DueReason | null {
   if (bin.kind !== 'counted' || bin.itemId === null || bin.retired) return null
+  // Nobody is there; what is below its line is ordered in time for the reopening.
+  if (bin.closed) return null
   if (bin.lastCount === null) return 'never-counted'
   if (bin.states.includes('count-first')) return 'count-first'
   if (bin.states.includes('count-overdue')) return 'count-overdue'
