@@ -6,7 +6,9 @@ import { dropPolicyJobs } from './demo.repository.ts'
 
 const dayMs = 86_400_000
 /** Vital places are also worked out as of these many days ago, so that their points have a past. */
-const lookBackDays = [60, 24, 16, 8]
+const lookBackDays = [60, 24, 16]
+/** Every place once more before today's run: what they then know is what they teach each other. */
+const firstNightDays = 8
 
 /** Works out every place's policy from the history, as the night's run does; single looks that waited are not needed. */
 export async function computeDemoPolicies(db: Db, clock: Clock, say: (line: string) => void): Promise<void> {
@@ -15,9 +17,13 @@ export async function computeDemoPolicies(db: Db, clock: Clock, say: (line: stri
     (v) => v.row.ved === 'V',
   )
   const binIds = vital.map((v) => v.row.id)
-  for (const days of first ? lookBackDays : []) {
+  const asOf = (days: number): Clock => {
     const then = new Date(clock.now().getTime() - days * dayMs)
-    await recomputeAll(db, { now: () => then }, 'nightly', { binIds })
+    return { now: () => then }
+  }
+  if (first) {
+    for (const days of lookBackDays) await recomputeAll(db, asOf(days), 'nightly', { binIds })
+    await recomputeAll(db, asOf(firstNightDays), 'nightly')
   }
   await recomputeAll(db, clock, 'nightly', {
     onProgress: (done, of) => {

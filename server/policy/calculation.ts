@@ -1,3 +1,4 @@
+import { nextCountAt } from '#shared/calendar/counting-calendar.ts'
 import { nextSlot } from '#shared/calendar/order-calendar.ts'
 import { orderForReopening } from '#shared/calendar/holiday-gap.ts'
 import { countsKept } from '#shared/demand/counts-kept.ts'
@@ -6,7 +7,7 @@ import { blendLeadTimes } from '#shared/demand/lead-times.ts'
 import { useStopped } from '#shared/demand/use-stopped.ts'
 import type { PolicyInput } from '#shared/policy/policy-input.ts'
 import type { PolicyResult } from '#shared/policy/policy-result.ts'
-import { gapOf, neededOver } from '#shared/replenishment/gap-need.ts'
+import { neededOver } from '#shared/replenishment/gap-need.ts'
 import {
   calendarOf,
   countingOf,
@@ -78,6 +79,8 @@ export async function prepare(db: Reader, now: Date, world: World, view: BinView
     view,
     learned,
     protection,
+    plannedChange: world.changesOn(view).some((c) => fallsInto(c, protection, world)),
+    countOverdue: learned.lastCount !== null && dueCount(learned, world, times) < now.getTime(),
     exposureAhead: ahead.days + (learned.basePerDay === null ? 0 : ahead.extraUnits / learned.basePerDay),
     observedDays: blendLeadTimes(
       delays,
@@ -135,6 +138,15 @@ function countsKeptOf(now: number, world: World, { learned, view, times }: Prepa
 
 const iso = (ms: number): string => new Date(ms).toISOString()
 
+/** When the next count is planned. */
+const dueCount = (learned: Learned, world: World, times: PlaceTimes): number =>
+  nextCountAt(countingOf(world.hospital.timeZone, times), learned.lastCount!.at, learned.rhythmDays)
+
+function fallsInto(change: PlannedChangeRow, protection: Protection, world: World): boolean {
+  const { from, to } = spanOf(change, world.hospital.timeZone)
+  return from < Date.parse(protection.nextArrival) && (to === null || to > Date.parse(protection.countedAt))
+}
+
 /** Until the next arrival but one, and one more stretch as long: a change beyond that is not of this place's concern yet. */
 function matters(change: PlannedChangeRow, { protection }: Prepared, world: World): boolean {
   const { from, to } = spanOf(change, world.hospital.timeZone)
@@ -188,7 +200,7 @@ function flagsBefore(until: number, world: World, supply: Prepared['supply'], ti
 function gapFact(now: number, world: World, prepared: Prepared, result: PolicyResult): PolicyFacts['gap'] {
   const calendar = calendarOf(prepared.supply?.supplier ?? null, world.hospital.timeZone, prepared.times)
   if ('leadDays' in calendar || result.demand === null || result.reorderPoint === null) return null
-  const gap = gapOf(calendar, now)
+  const gap = world.gapOf(calendar, prepared, now)
   if (!gap) return null
   const level = neededOver(prepared.input, Date.parse(prepared.protection.countedAt), gap.nextArrival)
   if (level <= result.reorderPoint) return null

@@ -50,12 +50,15 @@ export async function learnFrom(db: Reader, view: BinView, until: Date | null, e
   return { ...learned, questions: questionsOf(learned).filter((q) => !isAnswered(q)) }
 }
 
+/** Nobody remembers what a stretch further back than this was. Our choice. */
+const rememberedMs = 60 * 86_400_000
+
 /** A merged interval is asked about as the whole it was judged as. */
 function questionsOf({ intervals, outliers }: LearnedDemand): Question[] {
   return outliers.flatMap(({ closingOpId, quantity, expected }) => {
     const at = intervals.findIndex((i) => i.closingOpId === closingOpId)
     const closing = intervals[at]
-    if (!closing) return []
+    if (!closing || closing.closedAt < (intervals.at(-1)?.closedAt ?? 0) - rememberedMs) return []
     let first = at
     for (let sum = closing.quantity; sum !== quantity && intervals[first - 1]?.why === 'merged';) {
       first -= 1

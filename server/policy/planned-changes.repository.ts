@@ -93,6 +93,7 @@ export async function listScopeIntervals(db: Reader, scope: Scope, from: Date, t
       openedAt: demandIntervals.openedAt,
       closedAt: demandIntervals.closedAt,
       days: demandIntervals.days,
+      exposureDays: demandIntervals.exposureDays,
       quantity: demandIntervals.quantity,
     })
     .from(demandIntervals)

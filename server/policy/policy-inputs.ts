@@ -12,6 +12,10 @@ interface Parts {
   protection: Protection
   /** Usual days, and planned extra units as such, in the protection interval. */
   exposureAhead: number
+  /** A planned change bears on the protection interval. */
+  plannedChange: boolean
+  /** The next planned count should have been made by now. */
+  countOverdue: boolean
   /** Lead times seen, blended with the stated one; empty where none were. */
   observedDays: number[]
   pool: PoolRow | null
@@ -46,6 +50,7 @@ export function policyInput(parts: Parts): PolicyInput {
     capacity: view.bin.capacity,
     shelfLifeDays: supply?.shelfLifeDays ?? null,
     pinnedFloor: aim.floor,
+    situation: { countOverdue: parts.countOverdue, plannedChange: parts.plannedChange },
   }
 }
 

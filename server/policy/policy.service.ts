@@ -186,8 +186,7 @@ interface Figures {
 /** A row is written only when figures, target, method or mode change. */
 function sameFigures(known: repo.PolicyRow, row: Figures, calculation: Calculation): boolean {
   const result = known.result as PolicyResult | null
-  const figures = (r: PolicyResult | null): string =>
-    JSON.stringify([r?.reorderPoint, r?.parLevel, r?.orderQuantity, r?.warnings])
+  const figures = (r: PolicyResult | null): string => JSON.stringify([r?.reorderPoint, r?.parLevel, r?.orderQuantity])
   return (
     known.mode === row.mode &&
     known.method === row.method &&

@@ -89,10 +89,9 @@ async function poolRows(db: Reader, now: Date, onlyItem: number | null = null) {
   const counts = (x: (typeof all)[number]): boolean => !leftOut.has(`${x.row.itemId} ${x.row.wardId}`)
   const byCategory = new Map<string, Map<number, PoolMember[]>>()
   for (const x of all.filter(counts)) {
-    const key = `${x.row.wardKind} ${x.row.category}`
-    const items = byCategory.get(key) ?? new Map<number, PoolMember[]>()
+    const items = byCategory.get(x.row.category) ?? new Map<number, PoolMember[]>()
     items.set(x.row.itemId, [...(items.get(x.row.itemId) ?? []), x.member])
-    byCategory.set(key, items)
+    byCategory.set(x.row.category, items)
   }
   const groups = new Map<string, typeof all>()
   for (const x of all) {
@@ -102,7 +101,7 @@ async function poolRows(db: Reader, now: Date, onlyItem: number | null = null) {
   }
   return [...groups.values()].flatMap((group) => {
     const { itemId, wardKind, category } = group[0]!.row
-    const likeItems = byCategory.get(`${wardKind} ${category}`) ?? new Map<number, PoolMember[]>()
+    const likeItems = byCategory.get(category) ?? new Map<number, PoolMember[]>()
     const prior = poolPrior(
       group.filter(counts).map((x) => x.member),
       [...likeItems.values()],
@@ -203,14 +202,16 @@ async function freezeSeenFactors(db: Db, clock: Clock): Promise<void> {
     const { from, to } = spanOf(change, timeZone)
     if (change.kind !== 'factor' || from > now) continue
     const until = new Date(Math.min(now, to ?? Infinity))
+    const weighed = change.usedFactor ?? change.factor ?? 1
     const rows = await listScopeIntervals(db, change, new Date(from - usualDays * dayMs), until)
     const bins = [...groupBy(rows, (r) => r.binId).values()].flatMap((own) => {
       const before = own.filter((r) => r.closedAt.getTime() <= from)
-      const days = sumOf(before, (r) => r.days)
+      const days = sumOf(before, (r) => r.exposureDays)
       if (days === 0) return []
       const inside = own
         .filter((r) => r.openedAt.getTime() >= from)
-        .map((r) => ({ quantity: r.quantity, exposureDays: r.days }))
+        // Their exposure was weighed with the factor as it stood: what is looked for is the factor itself.
+        .map((r) => ({ quantity: r.quantity, exposureDays: r.exposureDays / weighed }))
       return [{ basePerDay: sumOf(before, (r) => r.quantity) / days, inside }]
     })
     const seen = seenFactor({ entered: change.factor ?? 1, bins })

@@ -1,5 +1,8 @@
+import type { HolidayGap } from '#shared/calendar/holiday-gap.ts'
+import type { OrderCalendar } from '#shared/calendar/order-calendar.ts'
 import { exposureOf, type Exposure } from '#shared/demand/activity.ts'
 import type { Hospital } from '#shared/contracts/hospital.ts'
+import { gapOf } from '#shared/replenishment/gap-need.ts'
 import { closedDays, type ClosedDays } from '../catalogue/calendar.service.ts'
 import { readHospital } from '../catalogue/hospital.service.ts'
 import type { BinView } from '../counts/bin-view.service.ts'
@@ -23,8 +26,15 @@ export interface World {
   /** How busy the bin is, from weekdays and planned changes. */
   exposureOf(db: Reader, view: BinView): Promise<Exposure>
   poolOf(db: Reader, itemId: number, wardKind: string): Promise<PoolRow | null>
+  /** The holiday gap that is near for places of one supplier and ward. */
+  gapOf(calendar: OrderCalendar, place: GapPlace, now: number): HolidayGap | null
   /** Days deliveries came after the stated moment, newest first: of the item where enough were seen, else of its supplier. */
   delaysOf(db: Reader, supplierId: number, itemId: number): Promise<number[]>
+}
+
+interface GapPlace {
+  view: BinView
+  supply: repo.SupplyRow | null
 }
 
 /** So many deliveries of one item speak for themselves. */
@@ -39,6 +49,7 @@ export async function readWorld(db: Reader, wide = false): Promise<World> {
   const delays = new Map<number, Promise<{ itemId: number; delayDays: number }[]>>()
   const sharers = new Map<string, Promise<number>>()
   const exposures = new Map<string, Exposure>()
+  const gaps = new Map<string, HolidayGap | null>()
   const changesOn = (view: BinView): PlannedChangeRow[] => changes.filter((c) => bearsOn(c, view.row))
   return {
     hospital,
@@ -59,6 +70,14 @@ export async function readWorld(db: Reader, wide = false): Promise<World> {
       exposures.set(key, made)
       return made
     },
+    gapOf(calendar, { view, supply }, now) {
+      const key = `${supply?.supplier?.id} ${view.row.wardCalendarId} ${Math.floor(now / gapFreshMs)}`
+      const known = gaps.get(key)
+      if (known !== undefined) return known
+      const gap = gapOf(calendar, now)
+      gaps.set(key, gap)
+      return gap
+    },
     async poolOf(reader, itemId, wardKind) {
       if (!hospital.pooling) return null
       return pools ? (pools.get(poolKey(itemId, wardKind)) ?? null) : findPool(reader, itemId, wardKind)
@@ -72,6 +91,8 @@ export async function readWorld(db: Reader, wide = false): Promise<World> {
   }
 }
 
+/** A gap looked for this lately is the same gap. */
+const gapFreshMs = 60_000
 const everyDayAlike = [1, 1, 1, 1, 1, 1, 1]
 const poolKey = (itemId: number, wardKind: string): string => `${itemId} ${wardKind}`
 const isCases = (change: PlannedChangeRow): boolean => change.kind === 'cases'

@@ -96,6 +96,8 @@ export const PolicyInputSchema = z.strictObject(
     capacity: units('capacity').nullish(),
     shelfLifeDays: positiveDays('shelfLifeDays').nullish(),
     pinnedFloor: units('pinnedFloor').nullish(),
+    /** What only the caller knows, for the warnings. `plannedChange` left out: whether the days ahead weigh otherwise. */
+    situation: z.strictObject({ countOverdue: z.boolean().nullish(), plannedChange: z.boolean().nullish() }).nullish(),
   },
   { error: (issue) => (issue.code === 'invalid_type' ? 'a policy input is an object' : undefined) },
 )

@@ -15,8 +15,8 @@ export interface LevelChanges {
 /**
  * The warnings a fitted policy carries, in the order of the closed list.
  *
- * `planned-change`: the days ahead are not weighed as the days behind. `stated-lead-time`: no delivery was observed.
- * `pooled`: the prior comes from like bins. `count-overdue` is not among them: only the caller knows the time.
+ * `planned-change`, `count-overdue`: the caller says so; unless it does, a change is planned where the days ahead are
+ * not weighed as the days behind. `stated-lead-time`: no delivery was observed. `pooled`: the prior comes from like bins.
  */
 export function policyWarnings(input: ResolvedInput, fitted: Fitted, changes: LevelChanges): PolicyWarning[] {
   const found = new Set<PolicyWarning>(changes.order)
@@ -30,7 +30,8 @@ export function policyWarnings(input: ResolvedInput, fitted: Fitted, changes: Le
     if (usesPool(input, fitted)) found.add('pooled')
   }
   if (input.leadTime.observedDays.length === 0) found.add('stated-lead-time')
-  if (Math.abs(input.exposureRatio - 1) > 1e-9) found.add('planned-change')
+  if (input.situation.countOverdue) found.add('count-overdue')
+  if (input.situation.plannedChange) found.add('planned-change')
   if (changes.cut) found.add('shelf-cannot-hold')
   if (changes.floored) found.add('floor')
   return POLICY_WARNINGS.filter((warning) => found.has(warning))

@@ -45,6 +45,7 @@ export interface ResolvedInput {
   capacity: number | null
   shelfLifeDays: number | null
   pinnedFloor: number | null
+  situation: { countOverdue: boolean; plannedChange: boolean }
 }
 
 type Parsed = z.output<typeof PolicyInputSchema>
@@ -72,6 +73,7 @@ export function resolveInput(input: unknown): ResolvedInput {
   const reviewPeriodDays = data.reviewPeriodDays ?? 0
   const protectionDays = data.leadTime.meanDays + reviewPeriodDays
   const protectionExposureDays = data.protectionExposureDays ?? protectionDays
+  const exposureRatio = protectionDays > 0 ? protectionExposureDays / protectionDays : 1
   if (protectionDays === 0 && (sdDays > 0 || protectionExposureDays > 0))
     throw refused('/leadTime/meanDays', 'a lead time and review period of 0 days leave nothing to spread or to cover')
   return {
@@ -85,7 +87,7 @@ export function resolveInput(input: unknown): ResolvedInput {
     leadTime: { meanDays: data.leadTime.meanDays, sdDays, observedDays: data.leadTime.observedDays ?? [] },
     reviewPeriodDays,
     protectionDays,
-    exposureRatio: protectionDays > 0 ? protectionExposureDays / protectionDays : 1,
+    exposureRatio,
     protectionExposureDays,
     wastagePerDay: data.wastagePerDay ?? 0,
     serviceLevel: data.serviceLevel,
@@ -97,6 +99,10 @@ export function resolveInput(input: unknown): ResolvedInput {
     capacity: data.capacity ?? null,
     shelfLifeDays: data.shelfLifeDays ?? null,
     pinnedFloor: data.pinnedFloor ?? null,
+    situation: {
+      countOverdue: data.situation?.countOverdue ?? false,
+      plannedChange: data.situation?.plannedChange ?? Math.abs(exposureRatio - 1) > 1e-9,
+    },
   }
 }
 
