@@ -1,5 +1,6 @@
 import type { Today } from '#shared/contracts/replenishment.ts'
 import { workingDaysBetween } from '#shared/replenishment/believed.ts'
+import { emptyCalendars } from '../catalogue/calendars.service.ts'
 import { readHospital } from '../catalogue/hospital.service.ts'
 import type { Clock } from '../clock.ts'
 import { momentOf, viewBins, type BinView } from '../counts/bin-view.service.ts'
@@ -8,6 +9,8 @@ import type { Reader } from '../db/client.ts'
 import type { Actor } from '../http/context.ts'
 import { stuckJobs } from '../jobs/jobs.service.ts'
 import { stuckMail } from '../mail/mail.service.ts'
+import { askedPlaces } from '../policy/policy.service.ts'
+import { gapsInShort } from '../replenishment/gap.service.ts'
 import { listOrders } from '../replenishment/orders.service.ts'
 import { outlookOf, type Outlook } from '../replenishment/worklist.service.ts'
 import { recentMoves, reviewRows } from '../review/review.service.ts'
@@ -20,7 +23,7 @@ const listed = 8
 export async function readToday(db: Reader, clock: Clock, actor: Actor): Promise<Today> {
   if (actor.role === 'coordinator') return { coordinator: await coordinatorToday(db, clock, actor) }
   if (actor.role === 'reviewer') return { reviewer: await reviewerToday(db, clock, actor) }
-  if (actor.role === 'administrator') return { administrator: await administratorToday(db) }
+  if (actor.role === 'administrator') return { administrator: await administratorToday(db, clock) }
   return {}
 }
 
@@ -57,7 +60,16 @@ async function coordinatorToday(db: Reader, clock: Clock, actor: Actor): Promise
         expectedOn: o.expectedOn!,
         workingDaysLate: workingDaysBetween(o.expectedOn!, moment.today),
       })),
+    gaps: await gapsInShort(db, { now: moment.now, timeZone }, views),
+    calendars: await emptyCalendars(db, clock),
+    asked: await askedIn(db, views),
   }
+}
+
+/** Places in scope that wait for somebody's word. */
+async function askedIn(db: Reader, views: BinView[]): Promise<number> {
+  const asked = await askedPlaces(db)
+  return views.filter((v) => (asked.get(v.row.id) ?? 0) > 0).length
 }
 
 /** One row per supplier that has something to order, the nearest cut-off first. */
@@ -101,7 +113,7 @@ async function reviewerToday(db: Reader, clock: Clock, actor: Actor): Promise<No
   }
 }
 
-async function administratorToday(db: Reader): Promise<NonNullable<Today['administrator']>> {
+async function administratorToday(db: Reader, clock: Clock): Promise<NonNullable<Today['administrator']>> {
   const problems: NonNullable<Today['administrator']>['problems'] = []
   const attention = await openAttention(db)
   if (attention > 0) {
@@ -125,6 +137,13 @@ async function administratorToday(db: Reader): Promise<NonNullable<Today['admini
       what: `${jobs.length} background jobs keep failing: ${jobs[0]!.lastError ?? ''}`,
       action: 'Restart Brimline; if it stays, keep the log and ask for help.',
       to: null,
+    })
+  }
+  for (const calendar of await emptyCalendars(db, clock)) {
+    problems.push({
+      what: `The calendar ${calendar.name} has no closed days in ${calendar.emptyYear}.`,
+      action: 'Enter the days of that year, or read them from a file; until then every day counts as open.',
+      to: `/hospital/calendars/${calendar.id}`,
     })
   }
   return { problems }

@@ -222,6 +222,21 @@ export const Today = z.object({
           workingDaysLate: z.number().int(),
         }),
       ),
+      /** Holiday gaps that are near; `places` would not last and stand in no draft yet. */
+      gaps: z.array(
+        z.object({
+          supplierId: Id,
+          supplierName: z.string(),
+          name: z.string(),
+          from: DateOnly,
+          lastOrderBy: Instant,
+          places: z.number().int(),
+        }),
+      ),
+      /** Calendars somebody goes by that say nothing about a year that is near. */
+      calendars: z.array(z.object({ id: Id, name: z.string(), emptyYear: z.number().int() })),
+      /** Places with unusual stretches of use that wait for a word. */
+      asked: z.number().int(),
     })
     .optional(),
   reviewer: z
