@@ -61,18 +61,19 @@ export interface PackedBatch {
  * @throws {PolicyInputError} for the first input that cannot be read
  */
 export function packBatch(inputs: readonly PolicyInput[]): PackedBatch {
-  const taken: ResolvedInput[] = []
+  const rows = inputs.reduce((sum, { intervals }) => sum + (intervals?.length ?? 0), 0)
+  const batch = emptyBatch(inputs.length, rows)
   const covered: number[] = []
   const rest: number[] = []
   inputs.forEach((input, i) => {
     const resolved = resolveInput(input)
     if (!isCovered(resolved)) rest.push(i)
     else {
-      taken.push(resolved)
+      addBin(batch, covered.length, resolved)
       covered.push(i)
     }
   })
-  return { batch: columnsOf(taken), covered: Int32Array.from(covered), rest }
+  return { batch: trimmed(batch, covered.length), covered: Int32Array.from(covered), rest }
 }
 
 function isCovered(input: ResolvedInput): boolean {
@@ -92,33 +93,50 @@ function isCovered(input: ResolvedInput): boolean {
   return whole > 0 || prior.rate !== null
 }
 
-function columnsOf(inputs: readonly ResolvedInput[]): MixtureBatch {
-  const rows = inputs.reduce((sum, { intervals }) => sum + intervals!.length, 0)
-  const batch = emptyBatch(inputs.length, rows)
-  let at = 0
-  inputs.forEach((input, i) => {
-    const spread = input.leadTime.sdDays * input.exposureRatio
-    batch.offsets[i] = at
-    batch.protectionDays[i] = input.protectionDays
-    batch.protectionExposure[i] = input.protectionExposureDays
-    batch.protectionVariance[i] = spread * spread
-    batch.serviceLevel[i] = input.serviceLevel
-    batch.nu0[i] = input.prior.nu0
-    batch.w0[i] = input.prior.w0
-    batch.rateA[i] = input.prior.rate?.a ?? Number.NaN
-    batch.rateB[i] = input.prior.rate?.b ?? Number.NaN
-    batch.wastagePerDay[i] = input.wastagePerDay
-    batch.auto[i] = input.method === 'auto' ? 1 : 0
-    for (const interval of input.intervals!) {
-      batch.exposureDays[at] = interval.exposureDays
-      batch.quantity[at] = interval.quantity
-      batch.weight[at] = interval.weight
-      batch.censored[at] = interval.censored ? 1 : 0
-      at++
-    }
-  })
-  batch.offsets[inputs.length] = at
-  return batch
+function addBin(batch: MixtureBatch, i: number, input: ResolvedInput): void {
+  const spread = input.leadTime.sdDays * input.exposureRatio
+  batch.protectionDays[i] = input.protectionDays
+  batch.protectionExposure[i] = input.protectionExposureDays
+  batch.protectionVariance[i] = spread * spread
+  batch.serviceLevel[i] = input.serviceLevel
+  batch.nu0[i] = input.prior.nu0
+  batch.w0[i] = input.prior.w0
+  batch.rateA[i] = input.prior.rate?.a ?? Number.NaN
+  batch.rateB[i] = input.prior.rate?.b ?? Number.NaN
+  batch.wastagePerDay[i] = input.wastagePerDay
+  batch.auto[i] = input.method === 'auto' ? 1 : 0
+  let at = batch.offsets[i]!
+  for (const interval of input.intervals!) {
+    batch.exposureDays[at] = interval.exposureDays
+    batch.quantity[at] = interval.quantity
+    batch.weight[at] = interval.weight
+    batch.censored[at] = interval.censored ? 1 : 0
+    at++
+  }
+  batch.offsets[i + 1] = at
+}
+
+/** Without the room left for bins and intervals that were not taken. */
+function trimmed(batch: MixtureBatch, bins: number): MixtureBatch {
+  const rows = batch.offsets[bins]!
+  if (bins === batch.serviceLevel.length && rows === batch.quantity.length) return batch
+  return {
+    offsets: batch.offsets.slice(0, bins + 1),
+    exposureDays: batch.exposureDays.slice(0, rows),
+    quantity: batch.quantity.slice(0, rows),
+    weight: batch.weight.slice(0, rows),
+    censored: batch.censored.slice(0, rows),
+    protectionDays: batch.protectionDays.slice(0, bins),
+    protectionExposure: batch.protectionExposure.slice(0, bins),
+    protectionVariance: batch.protectionVariance.slice(0, bins),
+    serviceLevel: batch.serviceLevel.slice(0, bins),
+    nu0: batch.nu0.slice(0, bins),
+    w0: batch.w0.slice(0, bins),
+    rateA: batch.rateA.slice(0, bins),
+    rateB: batch.rateB.slice(0, bins),
+    wastagePerDay: batch.wastagePerDay.slice(0, bins),
+    auto: batch.auto.slice(0, bins),
+  }
 }
 
 function emptyBatch(bins: number, rows: number): MixtureBatch {
