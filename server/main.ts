@@ -127,12 +127,21 @@ function listen(server: Server, env: ServerEnv): Promise<Server> {
 
 function startJobs(deps: AppDeps, env: ServerEnv) {
   const owner = `${hostname()}-${process.pid}`
-  const handlers = jobHandlers(deps.db, deps.clock)
+  const { 'policy-all': wholeRun, ...short } = jobHandlers(deps.db, deps.clock)
   const transport = env.smtpUrl ? smtpTransport(env.smtpUrl) : fileTransport(env.dataDir)
   let swept = 0
-  return startWorker(
+  const onError = (error: unknown): void => {
+    process.stderr.write(`A job failed and is tried again: ${error instanceof Error ? error.message : String(error)}\n`)
+  }
+  // A run over every place has a loop of its own: what a count changes must not wait for it.
+  const runs = startWorker(
+    [() => runOne(deps.db, deps.clock, { 'policy-all': wholeRun! }, `${owner}-run`)],
+    2_000,
+    onError,
+  )
+  const work = startWorker(
     [
-      () => runOne(deps.db, deps.clock, handlers, owner),
+      () => runOne(deps.db, deps.clock, short, owner),
       async () => (await sendDue(deps.db, deps.clock, transport, owner)) > 0,
       async () => {
         const now = deps.clock.now().getTime()
@@ -144,11 +153,13 @@ function startJobs(deps: AppDeps, env: ServerEnv) {
       },
     ],
     400,
-    (error) =>
-      process.stderr.write(
-        `A job failed and is tried again: ${error instanceof Error ? error.message : String(error)}\n`,
-      ),
+    onError,
   )
+  return {
+    async stop() {
+      await Promise.all([work.stop(), runs.stop()])
+    },
+  }
 }
 
 /** Recomputes every projection and reports what differs. @returns the number of differences */

@@ -1,4 +1,4 @@
-import { and, asc, eq, gte, isNull, lt, lte, or } from 'drizzle-orm'
+import { and, asc, eq, gte, inArray, isNull, lt, lte, or } from 'drizzle-orm'
 import type { Db, Reader, Tx } from '../db/client.ts'
 import { isDuplicate } from '../db/errors.ts'
 import { jobs } from './jobs.tables.ts'
@@ -14,12 +14,18 @@ export async function insertJob(tx: Tx | Db, row: typeof jobs.$inferInsert): Pro
   }
 }
 
-export async function leaseJob(db: Db, owner: string, now: Date, leaseMs: number): Promise<JobRow | null> {
+export async function leaseJob(
+  db: Db,
+  kinds: string[],
+  owner: string,
+  now: Date,
+  leaseMs: number,
+): Promise<JobRow | null> {
   const free = or(isNull(jobs.leaseUntil), lt(jobs.leaseUntil, now))
   const [due] = await db
     .select({ id: jobs.id })
     .from(jobs)
-    .where(and(lte(jobs.runAt, now), free))
+    .where(and(inArray(jobs.kind, kinds), lte(jobs.runAt, now), free))
     .orderBy(asc(jobs.runAt), asc(jobs.id))
     .limit(1)
   if (!due) return null

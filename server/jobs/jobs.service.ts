@@ -19,20 +19,18 @@ export async function enqueue(
 const leaseMs = 120_000
 const renewMs = 30_000
 
-/** Runs one due job. @returns whether there was one */
+/** Runs one due job of the kinds that are handled. @returns whether there was one */
 export async function runOne(
   db: Db,
   clock: Clock,
   handlers: Record<string, JobHandler>,
   owner: string,
 ): Promise<boolean> {
-  const job = await leaseJob(db, owner, clock.now(), leaseMs)
+  const job = await leaseJob(db, Object.keys(handlers), owner, clock.now(), leaseMs)
   if (!job) return false
   const renewal = setInterval(() => void keepLease(db, clock, job.id, owner), renewMs)
   try {
-    const handler = handlers[job.kind]
-    if (!handler) throw new Error(`no handler for ${job.kind}`)
-    await handler(job.payload)
+    await handlers[job.kind]!(job.payload)
     await deleteJob(db, job.id)
   } catch (error) {
     const wait = Math.min(3_600_000, 2_000 * 2 ** job.attempts)

@@ -1,6 +1,9 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import { and, eq } from 'drizzle-orm'
 import { auditLog } from '#server/audit/audit.tables.ts'
+import { inTransaction } from '#server/db/transaction.ts'
+import { jobHandlers } from '#server/jobs/handlers.ts'
+import { enqueue, runOne, startWorker } from '#server/jobs/jobs.service.ts'
 import { rebuildAll } from '#server/policy/rebuild.service.ts'
 import type { Bin } from '#shared/contracts/bins.ts'
 import type { Item, Room } from '#shared/contracts/catalogue.ts'
@@ -166,6 +169,27 @@ describe('a bin’s policy', () => {
     const { moved } = (await reviewer.get('/today')).body.reviewer
     expect(moved).toMatchObject([{ bin: { id: bin.id }, from: expect.any(Number), to: expect.any(Number) }])
     expect((await reviewer.get('/review?show=moved')).body.items.map((r: Bin) => r.id)).toEqual([bin.id])
+  })
+
+  it('reaches the coordinator within five seconds of a count, also while a run over every place is asked for', async () => {
+    const { db } = app.database
+    await inTransaction(db, (tx) => enqueue(tx, app.clock.now(), 'policy-all', { cause: 'calendar' }))
+    const { 'policy-all': _run, ...short } = jobHandlers(db, app.clock)
+    const worker = startWorker([() => runOne(db, app.clock, short, 'test')], 400, (error) => {
+      throw error
+    })
+    const before = (await policyOf()).intervals.length
+    days(7)
+    const coordinator = await app.as('coordinator')
+    await enter({ type: 'count', binId: bin.id, quantity: 25 })
+    try {
+      const seen = async (): Promise<number> =>
+        ((await coordinator.get(`/bins/${bin.id}/policy`)).body as BinPolicy).intervals.length
+      await expect.poll(seen, { timeout: 5_000, interval: 100 }).toBe(before + 1)
+    } finally {
+      await worker.stop()
+      await app.runJobs()
+    }
   })
 
   it('equals its projections after a rebuild', async () => {
