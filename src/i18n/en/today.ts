@@ -1,10 +1,15 @@
 import type { Today } from '#shared/contracts/replenishment.ts'
+import type { PolicyRun } from '#shared/contracts/policy.ts'
 import type { Moment } from './catalogue.ts'
-import { clock, counted, dateOf, dueShort, duration, near, quantity } from './format.ts'
+import { calendarWords } from './calendars.ts'
+import { clock, counted, dateOf, dayAndClock, dueShort, duration, near, quantity } from './format.ts'
 
 type Coordinator = NonNullable<Today['coordinator']>
 type Reviewer = NonNullable<Today['reviewer']>
 type CutOff = Coordinator['cutOffs'][number]
+type Gap = Coordinator['gaps'][number]
+/** A run over every place takes minutes; one that is older and not through was cut short. */
+const LONG_RUN_MINUTES = 180
 
 const minutesLeft = (iso: string, now: string): number => Math.floor((Date.parse(iso) - Date.parse(now)) / 60_000)
 
@@ -26,7 +31,36 @@ function reviewerHeading(today: Reviewer): string {
   return parts.length ? parts.join(', ') : 'Nothing is due for review'
 }
 
+/** How far the run over every place has come; null where it is through, or there was none. */
+function runWords(run: PolicyRun | null, at: Moment): { what: string; action: string } | null {
+  if (!run || run.finishedAt !== null) return null
+  const far = `${quantity(run.done)} of ${counted(run.bins, 'place')}`
+  const began = near(run.startedAt, at.now, at.zone)
+  return minutesLeft(at.now, run.startedAt) > LONG_RUN_MINUTES
+    ? {
+        what: `The run over every place that began ${began} did not finish: ${far}.`,
+        action: 'The rest keep the figures they had. It goes on where it stopped by itself.',
+      }
+    : {
+        what: `Every place is worked out anew: ${far} so far, since ${began}.`,
+        action: 'Nothing to do. The others keep the figures they had until it is their turn.',
+      }
+}
+
 export const todayWords = {
+  holidays: 'Before a holiday',
+  gap: (gap: Gap): string =>
+    gap.places > 0
+      ? `${gap.name}: ${counted(gap.places, 'place')} would not last`
+      : `${gap.name}: every place lasts, with what is in drafts and on order`,
+  gapBy: (gap: Gap, at: Moment): string => `last order to ${gap.supplierName} ${dayAndClock(gap.lastOrderBy, at.zone)}`,
+  toLook: 'To look at',
+  emptyYear: (calendar: Coordinator['calendars'][number]): string =>
+    calendarWords.emptyYearOf(calendar.name, calendar.emptyYear),
+  asked: (n: number): string => `${counted(n, 'place')} asked about`,
+  askedRow: 'Places asked about',
+  askedWhat: 'Use so unlike the rest that a word on it helps.',
+  run: runWords,
   coordinatorHeading,
   reviewerHeading,
   administratorHeading: (problems: number): string =>
