@@ -1,5 +1,6 @@
 import type { Today } from '#shared/contracts/replenishment.ts'
 import type { PolicyRun } from '#shared/contracts/policy.ts'
+import type { z } from 'zod'
 import type { Moment } from './catalogue.ts'
 import { calendarWords } from './calendars.ts'
 import { clock, counted, dateOf, dayAndClock, dueShort, duration, near, quantity } from './format.ts'
@@ -32,7 +33,7 @@ function reviewerHeading(today: Reviewer): string {
 }
 
 /** How far the run over every place has come; null where it is through, or there was none. */
-function runWords(run: PolicyRun | null, at: Moment): { what: string; action: string } | null {
+function runWords(run: z.infer<typeof PolicyRun> | null, at: Moment): { what: string; action: string } | null {
   if (!run || run.finishedAt !== null) return null
   const far = `${quantity(run.done)} of ${counted(run.bins, 'place')}`
   const began = near(run.startedAt, at.now, at.zone)
