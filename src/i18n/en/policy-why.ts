@@ -97,7 +97,7 @@ const warningWords: Record<string, string> = {
   'minimum-order': 'The supplier’s minimum raises the order.',
 }
 
-const share = (part: number): string => `${quantity(Math.round(part * 100))} %`
+const share = (part: number): string => `${quantity(Math.round(part * 100))}\u00a0%`
 
 /** How a change moves use: "by a half", as the hospital entered it and as the counts show it. */
 function factorWords(change: BinPolicy['changes'][number]): string {
@@ -176,9 +176,9 @@ function oddsWords(policy: WhyPolicy, sure: number | null, cycles: number | null
   const inForce = point !== null && sure !== null && point !== c.reorderPoint
   const [level, chance] = inForce ? [point, sure] : [c.reorderPoint, c.achieved]
   const years = cycles === null ? '' : `; this place ${onceIn(chance, cycles)}`
-  const other = inForce ? ` At the ${quantity(c.reorderPoint)} worked out it would be ${odds(c.achieved)}.` : ''
   return [
-    `At ${quantity(level)} ${odds(chance)} runs out${years}.${other}`,
+    `At ${quantity(level)} ${odds(chance)} runs out${years}.`,
+    ...(inForce ? [`At the ${quantity(c.reorderPoint)} worked out it would be ${odds(c.achieved)}.`] : []),
     'That holds if counts keep their rhythm, deliveries come as before and use does not change.',
   ]
 }

@@ -22,13 +22,13 @@ function inputRows(policy: WhyPolicy, c: Computed): { label: string; value: stri
       label: 'Counts',
       value: c.demand ? `${quantity(c.demand.intervals)} over ${quantity(Math.round(c.demand.days))} days` : 'none',
     },
-    { label: 'Count to order', value: c.reviewPeriodDays > 0 ? dayCount(c.reviewPeriodDays) : 'no wait' },
+    { label: 'Count until that order', value: c.reviewPeriodDays > 0 ? dayCount(c.reviewPeriodDays) : 'no wait' },
     { label: 'Delivery', value: deliveryWords(policy, c) },
     { label: 'Has to last', value: dayCount(c.protectionDays) },
     { label: 'Aim', value: `1 in ${quantity(oddsIn(policy.target))} (${percent(policy.target)})` },
   ]
   if (input?.wastagePerDay) rows.splice(2, 0, { label: 'Wasted', value: `${decimal(input.wastagePerDay, 2)} a day` })
-  if (input?.protectionExposureDays != null && Math.abs(input.protectionExposureDays - c.protectionDays) > 0.05)
+  if (input?.protectionExposureDays != null && decimal(input.protectionExposureDays) !== decimal(c.protectionDays))
     rows.splice(-1, 0, { label: 'As busy as', value: `${decimal(input.protectionExposureDays)} usual days` })
   if (input?.capacity != null) rows.push({ label: 'Shelf holds', value: quantity(input.capacity) })
   return rows

@@ -1,4 +1,6 @@
 import type { ClassOutlook, ReviewRow } from '#shared/contracts/policy.ts'
+import type { AimStep } from '#src/components/review/aim-steps.ts'
+import type { Computed } from '#src/components/policy/why-policy.ts'
 import { vedWords } from './common.ts'
 import { counted, day, decimal, money, odds, oddsIn, onceIn, percent, quantity, signed } from './format.ts'
 
@@ -80,10 +82,13 @@ export const aimWords = {
   stepLong: (level: number): string => odds(level),
   reorderAt: 'reorder at',
   stepLeft: (level: number, safety: number): string => `${percent(level)} · ${decimal(safety)} above use`,
-  difference: (units: number, cost: number | null, unit: string, currency: string): string => {
-    if (units === 0) return 'no change'
-    const cash = cost === null || cost === 0 ? '' : `, ${money(Math.abs(cost), currency)} ${cost > 0 ? 'more' : 'less'}`
-    return `${signed(units)} ${unit}${cash}`
+  stepOnce: (chance: number, cycles: number): string => onceIn(chance, cycles),
+  difference: (units: number, unit: string): string => (units === 0 ? 'no change' : `${signed(units)} ${unit}`),
+  /** What stands on the shelf on average, and what that costs a year. */
+  held: (meanStock: number | null, cost: number | null, currency: string): string => {
+    if (meanStock === null) return ''
+    const cash = cost ? `, ${money(cost >= 10 ? Math.round(cost) : cost, currency)} a year` : ''
+    return `${quantity(Math.round(meanStock))} kept${cash}`
   },
   now: 'now',
   other: 'Another aim',
@@ -96,10 +101,28 @@ export const aimWords = {
     capacity === null
       ? 'The shelf is too small for some of these.'
       : `The shelf holds ${quantity(capacity)}, so some of these are cut to fit.`,
-  once: (level: number, cycles: number | null): string =>
-    cycles === null
-      ? `At this aim ${odds(level)} runs out.`
-      : `At this aim ${odds(level)} runs out; this place ${onceIn(level, cycles)}.`,
+  /** What the chosen aim comes to; estimates. */
+  once: (step: AimStep): string => {
+    const runs = `At ${quantity(step.reorderPoint)} ${odds(step.cycleService)} runs out, ${onceIn(step.cycleService, step.cyclesPerYear)}`
+    if (step.shortPerYear === null) return `${runs}.`
+    const short = step.shortPerYear
+    const many = short < 0.1 ? 'hardly any' : `about ${decimal(short, short < 10 ? 1 : 0)}`
+    return `${runs}; ${many} a year would be asked for and not there.`
+  },
+  keptMeans: 'Kept: what stands on the shelf on average. Money: what holding that costs.',
+  /** What so few data cannot tell. */
+  limits: (step: AimStep, figures: Computed | null): string[] => {
+    const said: string[] = []
+    if (figures?.demand && !figures.demand.sufficient)
+      said.push('There are few counts yet: every step keeps more than it would with many.')
+    if (figures?.dataCarry != null && step.level > figures.dataCarry)
+      said.push(
+        `Use comes in lumps or runs: these counts alone could confirm aims up to 1 in ${quantity(oddsIn(figures.dataCarry))}; a higher one rests on the law.`,
+      )
+    if (step.yearsBetweenRunOuts !== null && step.yearsBetweenRunOuts >= 2)
+      said.push('The record of one place cannot confirm so high an aim; look at the class as a whole.')
+    return said
+  },
   working: 'Working it out …',
   cannot: 'There are not enough counts to work this out. The aim can still be set; it is used as soon as there are.',
   reason: 'Reason',

@@ -101,7 +101,9 @@ describe('why, in plain words', () => {
         { id: '1', name: 'Winter beds', kind: 'factor', startsOn: '2026-12-05', endsOn: null, entered: 1.3, seen: 1.1 },
       ],
     })
-    const said = whyWords.bearing(helped, aBin('1', { states: ['count-overdue'] }), at)
+    const said = whyWords
+      .bearing(helped, aBin('1', { states: ['count-overdue'] }), at)
+      .map((s) => s.replaceAll('\u00a0', ' '))
     expect(said).toContain('The counts here weigh 30 %, 6 like wards 70 %.')
     expect(said).toContain(
       '“Winter beds” from 5 December 2026 until further notice is part of it, planned as 30 % more; the counts show 10 % more.',
@@ -113,9 +115,11 @@ describe('why, in plain words', () => {
     const why = whyOf({ reorderPoint: 90 })
     why.computed = { ...why.computed!, reorderPoint: 40, achieved: 0.995 }
     // 5 a day in packs of 50: 36.5 cycles a year; one in 1,000 of them is once in 27 years.
-    expect(whyWords.odds(why, 0.999, cyclesPerYear(5, 50))[0]).toBe(
-      'At 90 about 1 delivery cycle in 1,000 runs out; this place about once in 27 years. At the 40 worked out it would be about 1 delivery cycle in 200.',
-    )
+    expect(whyWords.odds(why, 0.999, cyclesPerYear(5, 50))).toEqual([
+      'At 90 about 1 delivery cycle in 1,000 runs out; this place about once in 27 years.',
+      'At the 40 worked out it would be about 1 delivery cycle in 200.',
+      expect.stringContaining('if counts keep their rhythm'),
+    ])
     expect(cyclesPerYear(2, 50)).toBeCloseTo(14.6)
     expect(cyclesPerYear(0, 50)).toBeNull()
   })
