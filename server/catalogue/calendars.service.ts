@@ -100,7 +100,7 @@ function nameTaken(error: unknown): never {
 export async function createCalendar(
   tx: Tx,
   clock: Clock,
-  actorId: number,
+  actorId: number | null,
   input: { name: string },
 ): Promise<Calendar> {
   const id = await repo.insertCalendar(tx, input.name).catch(nameTaken)
@@ -124,7 +124,7 @@ interface Change {
 export async function updateCalendar(
   tx: Tx,
   clock: Clock,
-  actorId: number,
+  actorId: number | null,
   id: number,
   input: Change,
 ): Promise<Calendar> {

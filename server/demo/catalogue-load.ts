@@ -1,6 +1,7 @@
 import { randomBytes } from 'node:crypto'
 import { DateTime } from 'luxon'
 import { audit } from '../audit/audit.service.ts'
+import { createCalendar, updateCalendar } from '../catalogue/calendars.service.ts'
 import { createHospital } from '../catalogue/hospital.service.ts'
 import { createItem, updateItem } from '../catalogue/items.service.ts'
 import { createRoom, createSupplier, createWard } from '../catalogue/places.service.ts'
@@ -10,6 +11,7 @@ import type { Tx } from '../db/client.ts'
 import type { Actor } from '../http/context.ts'
 import { createUser } from '../people/people.service.ts'
 import { binPlans, storyPlan, type BinPlan } from './bin-plan.ts'
+import { calendarName, holidaysBetween } from './catalogue/holidays.ts'
 import { items, lookalikes } from './catalogue/items.ts'
 import { people } from './catalogue/people.ts'
 import { hospital, rooms, suppliers, wards } from './catalogue/places.ts'
@@ -30,13 +32,13 @@ interface Load {
 /** Everything that stands before the first count, through the same functions as the forms. One transaction. */
 export async function loadCatalogue(load: Load): Promise<void> {
   const { tx, clock, say } = load
-  await createHospital(tx, clock, hospital)
+  await createHospital(tx, clock, { ...hospital, calendarId: await createHolidays(load) })
   const roomIds = new Map<string, string>()
   const administrator = await createPeople(load, (p) => p.role === 'administrator', roomIds)
   const by = administrator.get('5011')!
   const wardIds = new Map<string, string>()
   for (const ward of wards) wardIds.set(ward.code, (await createWard(tx, clock, by, { ...ward, calendarId: null })).id)
-  for (const { code, name, ward, countEveryDays, countDays, mode } of rooms) {
+  for (const { code, name, ward, countEveryDays, countDays = '', mode } of rooms) {
     const room = { code, name, wardId: wardIds.get(ward)!, countEveryDays, countDays, mode }
     roomIds.set(code, (await createRoom(tx, clock, by, room)).id)
   }
@@ -48,6 +50,14 @@ export async function loadCatalogue(load: Load): Promise<void> {
   say(`Demo hospital: ${items.length} items, ${suppliers.length} suppliers, ${people.length} people.`)
   const binIds = await createBins(load, by, roomIds, itemIds)
   await setAims(load, binIds, staff)
+}
+
+/** From the first year of the history to the one after its last. */
+async function createHolidays({ tx, clock, to }: Load): Promise<string> {
+  const { id } = await createCalendar(tx, clock, null, { name: calendarName })
+  const yearOf = (at: Date): number => DateTime.fromJSDate(at, { zone: hospital.timeZone }).year
+  await updateCalendar(tx, clock, null, Number(id), { days: holidaysBetween(yearOf(clock.now()), yearOf(to) + 1) })
+  return id
 }
 
 async function createPeople(

@@ -4,6 +4,7 @@ import { movableClock, type Clock } from '../clock.ts'
 import type { Db } from '../db/client.ts'
 import { inTransaction } from '../db/transaction.ts'
 import type { ServerEnv } from '../env.ts'
+import { observeAllLeadTimes } from '../replenishment/lead-times.service.ts'
 import { loadCatalogue } from './catalogue-load.ts'
 import { alone, listMarkers, listTouched } from './demo.repository.ts'
 import { makeEmptyHospital } from './empty-hospital.ts'
@@ -96,6 +97,7 @@ async function bringUp(db: Db, clock: Clock, say: Say): Promise<void> {
   await tryToLiveOn(db, clock, { began, from }, say)
   const now = (await progressOf(db)).livedTo ?? from
   if (settledTo === now) return
+  await observeAllLeadTimes(db)
   await computeDemoPolicies(db, clock, say)
   const since = settledTo ?? began
   const touched = await listTouched(db, new Date(since))

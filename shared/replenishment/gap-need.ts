@@ -7,8 +7,8 @@ import { reorderPoint } from '#shared/policy/reorder-point.ts'
 const dayMs = 86_400_000
 /** A gap is spoken of from so long before its last order. Our choice. */
 export const gapAheadDays = 10
-/** Closed dates further ahead than this belong to no gap that is near: slots ahead, lead time and the gap itself. */
-const farDays = 90
+/** From a last order on, the days within which the closed ones that make its gap begin, without the lead time. */
+const withinDays = 14
 
 /**
  * The next holiday gap whose last order is still to come and at most ten days ahead; null when there is none.
@@ -17,19 +17,42 @@ const farDays = 90
  * @throws {RangeError} when the calendar has no slot or no delivery day within a year
  */
 export function gapOf(calendar: OrderCalendar, now: number): HolidayGap | null {
-  if (!hasClosedDates(calendar, now)) return null
   const until = now + gapAheadDays * dayMs
-  // The arrival of the first slot after the ten days is later than that of any within them.
-  const gaps = holidayGaps(calendar, now, arrivalOf(calendar, nextSlot(calendar, until, true)))
-  return gaps.find((gap) => gap.lastOrderBy >= now && gap.lastOrderBy <= until) ?? null
+  return gapsOfDay(calendar, now).find((gap) => gap.lastOrderBy >= now && gap.lastOrderBy <= until) ?? null
+}
+
+type Dates = ReadonlySet<string>
+const noDates: Dates = new Set()
+/** Gaps found already, by both sets of closed dates: in one run these are the same objects for every place. */
+const known = new WeakMap<Dates, WeakMap<Dates, Map<string, HolidayGap[]>>>()
+
+function gapsOfDay(calendar: OrderCalendar, now: number): HolidayGap[] {
+  const { holidays, closedToDeliveries = noDates, ...rest } = calendar
+  const day = Math.floor(now / dayMs)
+  const key = JSON.stringify([day, rest])
+  const byWard = known.get(holidays) ?? new WeakMap<Dates, Map<string, HolidayGap[]>>()
+  const byDay = byWard.get(closedToDeliveries) ?? new Map<string, HolidayGap[]>()
+  known.set(holidays, byWard.set(closedToDeliveries, byDay))
+  const gaps = byDay.get(key) ?? findGaps(calendar, day * dayMs)
+  byDay.set(key, gaps)
+  return gaps
+}
+
+/** Every gap that is near at some moment of the day that begins then. */
+function findGaps(calendar: OrderCalendar, from: number): HolidayGap[] {
+  if (!hasClosedDates(calendar, from)) return []
+  // The arrival of the first slot after that is later than any of those before.
+  const beyond = nextSlot(calendar, from + (gapAheadDays + 1) * dayMs, true)
+  return holidayGaps(calendar, from, arrivalOf(calendar, beyond))
 }
 
 function hasClosedDates(calendar: OrderCalendar, now: number): boolean {
   const today = DateTime.fromMillis(now, { zone: calendar.zone })
   const from = today.toISODate() ?? ''
-  const to = today.plus({ days: farDays }).toISODate() ?? ''
+  // Twice the lead: working days take in weekends.
+  const to = today.plus({ days: gapAheadDays + 1 + withinDays + 2 * calendar.lead.days }).toISODate() ?? ''
   const isNear = (date: string): boolean => date >= from && date <= to
-  return [...calendar.holidays].some(isNear) || [...(calendar.closedToDeliveries ?? [])].some(isNear)
+  return [...calendar.holidays].some(isNear) || [...(calendar.closedToDeliveries ?? noDates)].some(isNear)
 }
 
 /**

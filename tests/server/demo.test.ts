@@ -52,7 +52,7 @@ beforeAll(async () => {
   await expect(load(cutAt('places have their history'))).rejects.toThrow(Cut)
   signIns = await load((line) => said.push(line))
   views = await allViews()
-}, 60_000)
+}, 150_000)
 afterAll(() => database.drop())
 
 const allViews = (): Promise<BinView[]> =>

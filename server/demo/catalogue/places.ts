@@ -39,83 +39,27 @@ export interface DemoRoom {
   name: string
   ward: string
   countEveryDays: number
-  /** Weekdays on which it is counted, as digits; empty is every day. */
-  countDays: string
+  /** Weekdays on which it is counted, as digits; every day without it. */
+  countDays?: string
   mode: Room['mode']
 }
 
 /** Rooms by what they are for: medical, surgical, intensive care, emergency, children, theatres. */
 export const rooms: DemoRoom[] = [
-  {
-    key: 'A1',
-    code: 'ALD-1',
-    name: 'Alder supply room',
-    ward: 'ALD',
-    countEveryDays: 3,
-    countDays: '',
-    mode: 'calculated',
-  },
-  {
-    key: 'A2',
-    code: 'ALD-2',
-    name: 'Alder treatment room',
-    ward: 'ALD',
-    countEveryDays: 7,
-    countDays: '',
-    mode: 'calculated',
-  },
-  {
-    key: 'B1',
-    code: 'BIR-1',
-    name: 'Birch supply room',
-    ward: 'BIR',
-    countEveryDays: 4,
-    countDays: '',
-    mode: 'calculated',
-  },
-  {
-    key: 'C1',
-    code: 'CED-1',
-    name: 'Cedar supply room',
-    ward: 'CED',
-    countEveryDays: 2,
-    countDays: '',
-    mode: 'calculated',
-  },
-  {
-    key: 'C2',
-    code: 'CED-2',
-    name: 'Cedar breathing store',
-    ward: 'CED',
-    countEveryDays: 4,
-    countDays: '',
-    mode: 'calculated',
-  },
-  {
-    key: 'E1',
-    code: 'ELD-1',
-    name: 'Elder supply room',
-    ward: 'ELD',
-    countEveryDays: 3,
-    countDays: '',
-    mode: 'calculated',
-  },
-  {
-    key: 'H1',
-    code: 'HAZ-1',
-    name: 'Hazel supply room',
-    ward: 'HAZ',
-    countEveryDays: 5,
-    countDays: '',
-    mode: 'beside',
-  },
+  { key: 'A1', code: 'ALD-1', name: 'Alder supply room', ward: 'ALD', countEveryDays: 3, mode: 'calculated' },
+  { key: 'A2', code: 'ALD-2', name: 'Alder treatment room', ward: 'ALD', countEveryDays: 7, mode: 'calculated' },
+  { key: 'B1', code: 'BIR-1', name: 'Birch supply room', ward: 'BIR', countEveryDays: 4, mode: 'calculated' },
+  { key: 'C1', code: 'CED-1', name: 'Cedar supply room', ward: 'CED', countEveryDays: 2, mode: 'calculated' },
+  { key: 'C2', code: 'CED-2', name: 'Cedar breathing store', ward: 'CED', countEveryDays: 4, mode: 'calculated' },
+  { key: 'E1', code: 'ELD-1', name: 'Elder supply room', ward: 'ELD', countEveryDays: 3, mode: 'calculated' },
+  { key: 'H1', code: 'HAZ-1', name: 'Hazel supply room', ward: 'HAZ', countEveryDays: 5, mode: 'beside' },
   {
     key: 'R1',
     code: 'ROW-1',
     name: 'Rowan theatre store',
     ward: 'ROW',
     countEveryDays: 7,
-    countDays: '',
+    countDays: '12345',
     mode: 'as-before',
   },
 ]

@@ -40,14 +40,23 @@ export function daysBetween(from: number, to: number, zone: string): Day[] {
   return Array.from({ length: last - first + 1 }, (_, i) => dayOf(first + i, zone))
 }
 
-/** The moment some working days later, at the same hour of the wall clock; for hours from 5 on. */
-export function workingDaysLater(ms: number, days: number, zone: string): number {
+/**
+ * The moment some working days later, at the same hour of the wall clock; for hours from 5 on.
+ *
+ * @param closed dates that are no working days, YYYY-MM-DD
+ */
+export function workingDaysLater(
+  ms: number,
+  days: number,
+  zone: string,
+  closed: ReadonlySet<string> = new Set(),
+): number {
   let day = dayOf(Math.floor((ms - origin) / dayMs) - 1, zone)
   while (dayOf(day.ordinal + 1, zone).base <= ms) day = dayOf(day.ordinal + 1, zone)
   const sinceMidnight = ms - day.base
   for (let left = days; left > 0;) {
     day = dayOf(day.ordinal + 1, zone)
-    if (day.weekday <= 5) left -= 1
+    if (day.weekday <= 5 && !closed.has(day.date)) left -= 1
   }
   return day.base + sinceMidnight
 }

@@ -1,10 +1,10 @@
-import { workingDaysBetween } from '#shared/replenishment/believed.ts'
+import { believedWorkingDays, workingDaysBetween } from '#shared/replenishment/believed.ts'
 import type { BinPlan } from '../bin-plan.ts'
 import { story, type StoryPlace } from '../story.ts'
 import { dayMs, type Day } from './days.ts'
 import type { Round } from './rounds.ts'
 import type { BinState, SimWindow } from './sim-types.ts'
-import { coordinatorOf, slotsOf, type Slot } from './supply.ts'
+import { coordinatorOf, isWorkingDay, slotsOf, type Slot } from './supply.ts'
 
 /** An order placed because the story wants it, whatever the shelf says; it is an order of its own. */
 export interface ForcedOrder {
@@ -90,7 +90,8 @@ function ending(state: BinState, days: readonly Day[], rounds: readonly Round[],
   if (is(story.neverKeyed, plan)) return { unkeyed: { from: to - 75 * dayMs, to: to - 28 * dayMs } }
   if (is(story.lateBelieved, plan)) {
     const slot = lastSlot(plan, days, (s) => s.expectedOn < window.today)
-    return slot ? forced(slot, 'late', { isAcknowledged: true, putAwayAt: null }) : {}
+    const late = slot && confirmedFor(slot, days, window.today)
+    return late ? forced(late, 'late', { isAcknowledged: true, putAwayAt: null }) : {}
   }
   if (isOneOf(story.partReceived, plan)) {
     const slot = lastSlot(plan, days, (s) => s.sentAt <= to - 12 * hourMs)
@@ -99,6 +100,13 @@ function ending(state: BinState, days: readonly Day[], rounds: readonly Round[],
     return slot ? forced(slot, 'part', { isAcknowledged: true, putAwayAt }) : {}
   }
   return {}
+}
+
+/** After holidays the last delivery lies too far back to be believed: the supplier has then confirmed a later day. */
+function confirmedFor(slot: Slot, days: readonly Day[], today: string): Slot {
+  if (workingDaysBetween(slot.expectedOn, today) <= believedWorkingDays) return slot
+  const later = days.filter((day) => day.date < today && isWorkingDay(day)).at(-1)
+  return later ? { ...slot, expectedOn: later.date } : slot
 }
 
 /** What the supplier had at hand comes with another van: the next afternoon, or the evening of the same day. */

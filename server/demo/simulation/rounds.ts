@@ -60,12 +60,20 @@ function habit(room: DemoRoom, days: readonly Day[]): number[] {
   const starts = new Map<number, number>()
   for (let k = Math.floor(first / rhythm) - 1; k <= Math.ceil(lastDay / rhythm) + 1; k += 1) {
     const random = keyed('habit', room.code, k)
-    const day = byOrdinal.get(Math.floor(k * rhythm + phase + (random() - 0.5) * 0.7 * rhythm))
+    const day = countingDay(room, byOrdinal, Math.floor(k * rhythm + phase + (random() - 0.5) * 0.7 * rhythm))
     if (!day || random() < skippedRounds || starts.has(day.ordinal)) continue
     const shift = random() < morningShare ? morning : late
     starts.set(day.ordinal, atHour(day, shift.from + random() * (shift.to - shift.from)))
   }
   return [...starts.values()].sort((a, b) => a - b)
+}
+
+const counts = (room: DemoRoom, day: Day): boolean => !room.countDays || room.countDays.includes(String(day.weekday))
+
+/** That day, or the next on which the room counts. */
+function countingDay(room: DemoRoom, days: ReadonlyMap<number, Day>, ordinal: number): Day | undefined {
+  const day = days.get(ordinal)
+  return !day || counts(room, day) ? day : countingDay(room, days, ordinal + 1)
 }
 
 /** The newest beginning of a shift at or before `at`. */
@@ -90,6 +98,7 @@ function closingRound(room: DemoRoom, days: readonly Day[], window: SimWindow, n
   const oldest = isStoryWard(room) ? 13 * hourMs : 0.7 * room.countEveryDays * dayMs
   if (window.to - newest <= oldest) return null
   const ago = isStoryWard(room) ? 0 : keyed('closing', room.code, window.to)() * 0.4 * room.countEveryDays * dayMs
-  const at = shiftBefore(days, window.to - longestWalkMs - ago)
+  const open = days.filter((day) => counts(room, day))
+  const at = shiftBefore(open, window.to - longestWalkMs - ago)
   return at !== null && at - newest > 6 * hourMs ? at : null
 }

@@ -1,5 +1,6 @@
 import { arrivalOf, nextSlot, type OrderCalendar } from '#shared/calendar/order-calendar.ts'
 import { calendarOf } from '../../catalogue/calendar.service.ts'
+import { holidaysBetween } from '../catalogue/holidays.ts'
 import type { DemoRoom } from '../catalogue/places.ts'
 import { hospital, suppliers } from '../catalogue/places.ts'
 import { atHour, localDate, workingDaysLater as laterBy, type Day } from './days.ts'
@@ -24,8 +25,17 @@ export interface Slot {
   date: string
 }
 
+/** Years in which the demo hospital may be started or left alone. */
+const years = { from: 2020, to: 2080 }
+const holidays = new Set(holidaysBetween(years.from, years.to).map((day) => day.date))
+
+export const isWorkingDay = (day: Pick<Day, 'date' | 'weekday'>): boolean => day.weekday <= 5 && !holidays.has(day.date)
+
 const calendars = new Map(
-  suppliers.map((s) => [s.code, calendarOf({ ...s }, hospital.timeZone) as OrderCalendar] as const),
+  suppliers.map((s) => {
+    const calendar = calendarOf({ ...s }, hospital.timeZone, { supplier: holidays, ward: holidays })
+    return [s.code, calendar as OrderCalendar] as const
+  }),
 )
 
 export function calendarOfSupplier(code: string): OrderCalendar {
@@ -60,7 +70,7 @@ export function slotsOf(supplierCode: string, coordinator: string, days: readonl
   if (!supplier) throw new RangeError(`no supplier ${supplierCode}`)
   const [hour = 0, minute = 0] = supplier.cutOff.split(':').map(Number)
   return days
-    .filter((day) => supplier.orderDays.includes(String(day.weekday)))
+    .filter((day) => supplier.orderDays.includes(String(day.weekday)) && !holidays.has(day.date))
     .flatMap((day) => {
       const random = keyed('slot', supplierCode, coordinator, day.ordinal)
       if (random() < missedDays && !all) return []
@@ -111,7 +121,7 @@ const delays: Record<'stores' | 'outside', [share: number, workingDays: number][
 }
 
 /** The moment some working days later, at the same hour of the wall clock. */
-export const workingDaysLater = (ms: number, days: number): number => laterBy(ms, days, hospital.timeZone)
+export const workingDaysLater = (ms: number, days: number): number => laterBy(ms, days, hospital.timeZone, holidays)
 
 const arrivals = new Map<string, number>()
 
