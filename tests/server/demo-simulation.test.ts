@@ -4,6 +4,7 @@ import { binPlans, storyPlan, type BinPlan } from '#server/demo/bin-plan.ts'
 import { items, lookalikes } from '#server/demo/catalogue/items.ts'
 import { rooms, suppliers, wards } from '#server/demo/catalogue/places.ts'
 import { piecesOf } from '#server/demo/live-on.ts'
+import { holidaysBetween, holidaysOf } from '#server/demo/catalogue/holidays.ts'
 import { dayMs, workingDaysLater } from '#server/demo/simulation/days.ts'
 import { demoZone, simulate, untouched, windowOf } from '#server/demo/simulation/simulator.ts'
 import type { SimOp, Simulated } from '#server/demo/simulation/sim-types.ts'
@@ -70,6 +71,14 @@ describe('the catalogue of the demo hospital', () => {
       if (plan.overflowOf === null) expect(plan.parLevel, plan.item.name).toBeGreaterThan(plan.reorderPoint)
       expect(plan.capacity, plan.item.name).toBeGreaterThanOrEqual(plan.parLevel)
     }
+  })
+
+  it('keeps its holidays, one on a weekend on the next free working day as well', () => {
+    expect(holidaysOf(2027).map((day) => day.date)).toEqual([
+      ...['2027-01-01', '2027-05-03', '2027-05-31', '2027-08-30'],
+      // A Saturday and a Sunday, and the Monday and the Tuesday in their place.
+      ...['2027-12-25', '2027-12-26', '2027-12-27', '2027-12-28'],
+    ])
   })
 
   it('puts look-alikes side by side', () => {
@@ -157,6 +166,17 @@ describe.each(moments)('a history that ends at %s', (now) => {
       if (left < 0) expect.fail(`${op.line} by ${-left}`)
       units.set(op.line ?? '', left)
     }
+  })
+
+  it('orders, delivers and counts on days that are open for it', () => {
+    const closed = new Set(holidaysBetween(2026, 2028).map((day) => day.date))
+    const dayOf = (ms: number): DateTime => DateTime.fromMillis(ms, { zone: demoZone })
+    const isClosed = (ms: number): boolean => closed.has(dayOf(ms).toISODate() ?? '')
+    expect(told.made.orders.filter((o) => closed.has(o.expectedOn) || isClosed(o.sentAt))).toEqual([])
+    const theatre = new Set(plans.filter((p) => p.room.countDays === '12345').map((p) => p.code))
+    const counts = told.ops.filter((op) => op.type === 'count' && theatre.has(op.bin))
+    expect(counts.length).toBeGreaterThan(100)
+    expect(counts.filter((op) => dayOf(op.at).weekday > 5)).toEqual([])
   })
 
   it('ends with an empty vital place and eighteen next door', () => {
