@@ -28,7 +28,7 @@ export const learningWords = {
     real: 'It counts on and is not asked about again. Say what it was.',
   },
   typing: (q: Question, at: Moment): string =>
-    `Then the count of ${shortDay(dateOf(q.to, at.zone))}, or the one before it, is wrong. Compare both with the record below and have it counted again. If nobody knows the right number any more, leave the stretch out.`,
+    `Then the count of ${shortDay(dateOf(q.to, at.zone))} or the one before it is wrong. Compare both in the record below and count the place again, so that its level is right from now on. Leave the stretch out, so that the wrong number teaches nothing.`,
   typingReason: 'Typing error in a count',
   toLedger: 'Show the count',
   leaveOut: 'Leave it out',

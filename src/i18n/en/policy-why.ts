@@ -115,6 +115,17 @@ function changeWords(change: BinPolicy['changes'][number]): string {
   return `“${change.name}” ${span} is part of it${how}.`
 }
 
+/** Below this share of difference the days ahead are like any others. */
+const SAME_DAYS = 0.05
+
+/** Where no change is planned, days differ only by how use spreads over the week. */
+function weekdayWords({ input }: WhyPolicy, c: Computed): string | null {
+  const busy = input?.protectionExposureDays
+  if (busy == null || !(c.protectionDays > 0) || Math.abs(busy / c.protectionDays - 1) < SAME_DAYS) return null
+  const how = busy > c.protectionDays ? 'busier' : 'quieter'
+  return `The weekdays until then are ${how} than most: they count as ${dayCount(busy)}.`
+}
+
 function poolWords(pool: WhyPolicy['pool']): string | null {
   if (!pool) return null
   const wards = pool.wards.filter((ward) => !ward.own && !ward.leftOut).length
@@ -146,9 +157,7 @@ function bearing(policy: WhyPolicy, bin: Bin, at: Moment): string[] {
   const said = [
     overdue ? 'The count is overdue; each further day raises the figure until somebody counts.' : null,
     ...policy.changes.map(changeWords),
-    has('planned-change') && policy.changes.length === 0
-      ? 'The days ahead are expected to be busier or quieter than usual.'
-      : null,
+    policy.changes.length === 0 ? weekdayWords(policy, computed) : null,
     bin.gap ? gapWords(bin.gap, at) : null,
     poolWords(policy.pool) ?? (has('pooled') ? 'Like wards helped, because there are few counts here.' : null),
     has('shelf-cannot-hold') ? shelfWords(computed) : null,
