@@ -123,9 +123,13 @@ export const newestRecord = newestRecordedAt
 /** Entries that could not be taken in and that nobody has settled. */
 export const openAttention = countOpenQuarantine
 
-/** Takes the locks of these bins, in the one order everybody keeps. */
-export async function lockBins(tx: Tx, binIds: number[]): Promise<void> {
-  await lockLevels(tx, binIds)
+/**
+ * Takes the locks of these bins, in the one order everybody keeps.
+ * @returns when the ledger of one of them was last folded, epoch ms: what was read before that may be stale
+ */
+export async function lockBins(tx: Tx, binIds: number[]): Promise<number> {
+  const rows = await lockLevels(tx, binIds)
+  return Math.max(0, ...rows.map((row) => row.foldedAt?.getTime() ?? 0))
 }
 
 /** What differs between a stored level and a fresh fold, or null. */

@@ -22,10 +22,11 @@ export async function computeDemoPolicies(db: Db, clock: Clock, say: (line: stri
     return { now: () => then }
   }
   if (first) {
-    for (const days of lookBackDays) await recomputeAll(db, asOf(days), 'nightly', { binIds })
-    await recomputeAll(db, asOf(firstNightDays), 'nightly')
+    for (const days of lookBackDays) await recomputeAll(db, asOf(days), 'nightly', { binIds, isAlone: true })
+    await recomputeAll(db, asOf(firstNightDays), 'nightly', { isAlone: true })
   }
   await recomputeAll(db, clock, 'nightly', {
+    isAlone: first,
     onProgress: (done, of) => {
       if (done % 80 === 0 || done === of) say(`Demo hospital: ${done} of ${of} reorder points worked out.`)
     },

@@ -32,6 +32,8 @@ const dayMs = 86_400_000
 
 /** Everything a bin's calculation is made from, before the calculation itself. */
 export interface Prepared {
+  /** The moment it was read at. */
+  at: Date
   view: BinView
   learned: Learned
   input: PolicyInput
@@ -92,7 +94,7 @@ export async function prepare(db: Reader, now: Date, world: World, view: BinView
     aim,
     money: world.hospital,
   })
-  return { view, learned, input, protection, aim, pool, supply, times, delays }
+  return { at: now, view, learned, input, protection, aim, pool, supply, times, delays }
 }
 
 /** Adds the result, and what else is worth saying about it. */

@@ -1,5 +1,5 @@
 import { and, asc, desc, eq, gt, gte, inArray, isNull, lte, max, sql, type SQL } from 'drizzle-orm'
-import { items, supplyAgreements, suppliers } from '../catalogue/catalogue.tables.ts'
+import { bins, items, supplyAgreements, suppliers } from '../catalogue/catalogue.tables.ts'
 import type { Db, Reader, Tx } from '../db/client.ts'
 import { demandIntervals, leadTimeObservations, policies, policyRuns } from './policy.tables.ts'
 
@@ -211,6 +211,12 @@ export async function listDelays(db: Reader, supplierId: number) {
     .where(eq(leadTimeObservations.supplierId, supplierId))
     .orderBy(desc(leadTimeObservations.arrivedAt), desc(leadTimeObservations.id))
     .limit(delaysKept)
+}
+
+/** Bins in use, by id: the order of a run. */
+export async function listLiveBins(db: Reader): Promise<number[]> {
+  const rows = await db.select({ id: bins.id }).from(bins).where(isNull(bins.retiredAt)).orderBy(asc(bins.id))
+  return rows.map((row) => row.id)
 }
 
 // Runs ------------------------------------------------------------------------------------------------------------

@@ -17,16 +17,18 @@ import { readWorld, type World } from './world.ts'
 /** What made a policy be looked at. */
 export type Cause = Settlement['cause']
 
-/** A result worked out elsewhere, and what it was worked out from. */
+/** A result worked out beforehand, with what it was made from. */
 export interface Ready {
-  input: PolicyInput
+  prepared: Prepared
   result: PolicyResult
+  /** Since then nobody else has written: a demo being loaded. */
+  isAlone: boolean
 }
 
 /**
  * Looks at one bin's policy again; the caller's transaction also holds what caused it.
  *
- * @param ready a result worked out beforehand: used when nothing it was made from has changed since
+ * @param ready used when neither the bin's ledger nor its policy has been written since it was prepared
  */
 export async function recompute(
   tx: Tx,
@@ -36,7 +38,12 @@ export async function recompute(
   world: World | null = null,
   ready: Ready | null = null,
 ): Promise<{ changed: boolean }> {
-  await lockBins(tx, [binId])
+  const foldedAt = await lockBins(tx, [binId])
+  const before = await repo.findCurrent(tx, binId)
+  if (ready !== null && isFresh(ready, foldedAt, before)) {
+    const calculation = complete(ready.prepared.at, world!, ready.prepared, ready.result)
+    return keep(tx, ready.prepared.at, calculation, before, cause)
+  }
   const around = world ?? (await readWorld(tx))
   const [view] = await viewBins(tx, momentOf(clock, around.hospital.timeZone), {
     roomIds: null,
@@ -50,17 +57,28 @@ export async function recompute(
   }
   const now = clock.now()
   const prepared = await prepare(tx, now, around, view)
-  const result = resultFor(prepared, ready)
-  const calculation = complete(now, around, prepared, result)
-  await storeIntervals(tx, view, calculation.learned)
-  const before = await repo.findCurrent(tx, binId)
-  const changed = await store(tx, now, view, calculation, before, cause)
-  if (changed) await touchBins(tx, now, [binId], null)
-  return { changed }
+  return keep(tx, now, complete(now, around, prepared, reorderPoint(prepared.input)), before, cause)
 }
 
-const resultFor = ({ input }: Prepared, ready: Ready | null): PolicyResult =>
-  ready !== null && JSON.stringify(ready.input) === JSON.stringify(input) ? ready.result : reorderPoint(input)
+const isFresh = ({ prepared, isAlone }: Ready, foldedAt: number, before: repo.PolicyRow | null): boolean =>
+  isAlone ||
+  (foldedAt < prepared.at.getTime() &&
+    (before?.id ?? null) === prepared.view.row.policyId &&
+    (before === null || before.asOf < prepared.at))
+
+async function keep(
+  tx: Tx,
+  now: Date,
+  calculation: Calculation,
+  before: repo.PolicyRow | null,
+  cause: Cause,
+): Promise<{ changed: boolean }> {
+  const { view } = calculation
+  await storeIntervals(tx, view, calculation.learned)
+  const changed = await store(tx, now, view, calculation, before, cause)
+  if (changed) await touchBins(tx, now, [view.row.id], null)
+  return { changed }
+}
 
 /** Overflow places follow their main place; fixed sets are kept by their own list. */
 export const isComputed = (view: BinView): boolean =>

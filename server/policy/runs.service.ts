@@ -1,9 +1,8 @@
-import type { PolicyInput } from '#shared/policy/policy-input.ts'
 import type { Clock } from '../clock.ts'
-import { momentOf, viewBins, type BinView } from '../counts/bin-view.service.ts'
+import { momentOf, viewBins } from '../counts/bin-view.service.ts'
 import type { Db, Reader } from '../db/client.ts'
 import { inTransaction } from '../db/transaction.ts'
-import { prepare } from './calculation.ts'
+import { prepare, type Prepared } from './calculation.ts'
 import { isComputed, recompute, type Cause, type Ready } from './policy.service.ts'
 import * as repo from './policy.repository.ts'
 import { freezeShared } from './pools.service.ts'
@@ -22,6 +21,8 @@ interface RunOptions {
   binIds?: number[]
   /** A run of this cause begun since then and cut short is gone on with, where it stopped. */
   resumeSince?: Date
+  /** Nobody else writes meanwhile: a demo being loaded. */
+  isAlone?: boolean
   onProgress?: (done: number, of: number) => void
 }
 
@@ -29,8 +30,8 @@ interface RunOptions {
  * Works out many bins, one transaction each, in the order of their ids and with progress written down, so that a run
  * that was cut short goes on where it stopped and no bin is ever left with half a policy.
  *
- * A night's run first freezes what places teach each other. Results come from worker threads; each is used only if the
- * bin's input still is what it was worked out from, else it is worked out anew under the lock.
+ * A night's run first freezes what places teach each other. Results come from worker threads; each is used only while
+ * nothing was written to its bin since it was read, else it is worked out anew under the lock.
  * @returns how many bins changed, over all parts of the run
  */
 export async function recomputeAll(db: Db, clock: Clock, cause: Cause, options: RunOptions = {}): Promise<number> {
@@ -38,11 +39,9 @@ export async function recomputeAll(db: Db, clock: Clock, cause: Cause, options: 
   if (cause === 'nightly' && open === null) await freezeShared(db, clock)
   const world = await readWorld(db, true)
   const wanted = options.binIds ? new Set(options.binIds) : null
-  const views = (await viewBins(db, momentOf(clock, world.hospital.timeZone), { roomIds: null, retired: false }))
-    .filter((v) => wanted === null || wanted.has(v.row.id))
-    .sort((a, b) => a.row.id - b.row.id)
-  const left = views.filter((v) => open?.lastBinId == null || v.row.id > open.lastBinId)
-  const of = views.length
+  const ids = (await repo.listLiveBins(db)).filter((id) => wanted === null || wanted.has(id))
+  const left = ids.filter((id) => open?.lastBinId == null || id > open.lastBinId)
+  const of = ids.length
   let done = of - left.length
   let changed = open?.changed ?? 0
   const run = open?.id ?? (await repo.insertRun(db, { startedAt: clock.now(), cause, bins: of, done: 0, changed: 0 }))
@@ -50,9 +49,9 @@ export async function recomputeAll(db: Db, clock: Clock, cause: Cause, options: 
   try {
     for (let i = 0; i < left.length; i += chunkSize) {
       const chunk = left.slice(i, i + chunkSize)
-      changed += await workOut(db, clock, world, cause, chunk, workers)
+      changed += await workOut(db, clock, { world, cause, ids: chunk, isAlone: options.isAlone ?? false }, workers)
       done += chunk.length
-      await repo.updateRun(db, run, { bins: of, done, changed, lastBinId: chunk.at(-1)!.row.id })
+      await repo.updateRun(db, run, { bins: of, done, changed, lastBinId: chunk.at(-1)! })
       options.onProgress?.(done, of)
     }
   } finally {
@@ -62,26 +61,34 @@ export async function recomputeAll(db: Db, clock: Clock, cause: Cause, options: 
   return changed
 }
 
-async function workOut(
-  db: Db,
-  clock: Clock,
-  world: World,
-  cause: Cause,
-  chunk: BinView[],
-  workers: PolicyWorkers,
-): Promise<number> {
-  const inputs = new Map<number, PolicyInput>()
-  const computed = chunk.filter(isComputed)
-  await sideBySide(computed, async (view) => {
-    inputs.set(view.row.id, (await prepare(db, clock.now(), world, view)).input)
+interface Part {
+  world: World
+  cause: Cause
+  ids: number[]
+  isAlone: boolean
+}
+
+async function workOut(db: Db, clock: Clock, part: Part, workers: PolicyWorkers): Promise<number> {
+  const prepared: Prepared[] = []
+  const views = await viewBins(db, momentOf(clock, part.world.hospital.timeZone), {
+    roomIds: null,
+    binIds: part.ids,
+    retired: false,
   })
-  const asked = [...inputs]
-  const results = await workers.compute(asked.map(([, input]) => input))
-  const ready = new Map<number, Ready>(asked.map(([id, input], i) => [id, { input, result: results[i]! }]))
+  await sideBySide(
+    views.filter((v) => !v.bin.retired && isComputed(v)),
+    async (view) => {
+      prepared.push(await prepare(db, clock.now(), part.world, view))
+    },
+  )
+  const results = await workers.compute(prepared.map((p) => p.input))
+  const ready = new Map<number, Ready>(
+    prepared.map((p, i) => [p.view.row.id, { prepared: p, result: results[i]!, isAlone: part.isAlone }]),
+  )
   let changed = 0
-  await sideBySide(chunk, async ({ row }) => {
+  await sideBySide(part.ids, async (id) => {
     const answer = await inTransaction(db, (tx) =>
-      recompute(tx, clock, row.id, cause, world, ready.get(row.id) ?? null),
+      recompute(tx, clock, id, part.cause, part.world, ready.get(id) ?? null),
     )
     if (answer.changed) changed += 1
   })
