@@ -275,6 +275,9 @@ export async function createSupplier(tx: Tx, clock: Clock, actorId: number, inpu
   return oneSupplier(tx, id)
 }
 
+/** What decides on which days it can be ordered from. */
+const timesOf = ['calendarId', 'orderDays', 'cutOff', 'arrivalDays', 'arrivalTime', 'leadWorkingDays'] as const
+
 export async function updateSupplier(
   tx: Tx,
   clock: Clock,
@@ -290,7 +293,8 @@ export async function updateSupplier(
   const { calendarId: _named, ...rest } = input
   const set = { ...changeOf(rest, clock.now()), ...(await calendarOfInput(tx, input)) }
   await repo.updateSupplierRow(tx, id, set).catch(codeTakenProblem)
-  await checkReach(tx, clock.now(), input.calendarId ? '/calendarId' : '/orderDays')
+  if (timesOf.some((field) => input[field] !== undefined))
+    await checkReach(tx, clock.now(), input.calendarId ? '/calendarId' : '/orderDays')
   await audit(tx, {
     at: clock.now(),
     userId: actor.id,

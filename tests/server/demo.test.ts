@@ -1,5 +1,7 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import { uuidv7 } from 'uuidv7'
+import { readCalendar } from '#server/catalogue/calendars.service.ts'
+import { readHospital } from '#server/catalogue/hospital.service.ts'
 import { listItems } from '#server/catalogue/items.service.ts'
 import { listRooms, listSuppliers, listWards } from '#server/catalogue/places.service.ts'
 import { movableClock } from '#server/clock.ts'
@@ -87,6 +89,17 @@ describe('the demo hospital', () => {
     expect((await listItems(database.db, list)).total).toBeGreaterThanOrEqual(180)
     expect((await listSuppliers(database.db, list)).total).toBe(4)
     expect(views.length).toBeGreaterThanOrEqual(300)
+  })
+
+  it('goes by a calendar of holidays, and has seen how long deliveries take', async () => {
+    const { calendarId } = await readHospital(database.db)
+    const calendar = await readCalendar(database.db, clock, Number(calendarId))
+    expect(calendar).toMatchObject({ isHospital: true, emptyYear: null })
+    expect(calendar.days.map((d) => d.date)).toContain('2026-12-25')
+    for (const { name, seen } of (await listSuppliers(database.db, list)).items) {
+      expect(seen.deliveries, name).toBeGreaterThan(20)
+      expect(Math.abs(seen.delayDays ?? 99), name).toBeLessThan(3)
+    }
   })
 
   it('says the sign-ins, and they work', async () => {
