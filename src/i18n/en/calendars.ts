@@ -25,6 +25,7 @@ function delayWords(days: number): string {
 export const calendarWords = {
   title: 'Calendars',
   what: 'days on which suppliers, stores or wards are closed',
+  lead: 'Days on which suppliers, stores or wards are closed.',
   one: 'Calendar',
   add: 'Add a calendar',
   newTitle: 'New calendar',
@@ -32,7 +33,7 @@ export const calendarWords = {
   none: 'No calendar yet',
   noneWhat:
     'A calendar holds the days on which nothing is ordered, delivered or counted, such as public holidays. Without one, every week is planned as an ordinary one.',
-  columns: { name: 'Name', usedBy: 'Used by', year: (year: number): string => `Days in ${year}` },
+  columns: { name: 'Name', usedBy: 'Used by', year: (year: number): string => `Days ${year}` },
   usedBy,
   usedByLead: (calendar: Uses): string => `Used by ${usedBy(calendar)}`,
   emptyYear: (year: number): string =>

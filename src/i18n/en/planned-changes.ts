@@ -23,7 +23,10 @@ function what(change: PlannedChange): string {
 
 const span = (change: Pick<PlannedChange, 'startsOn' | 'endsOn'>): string => {
   if (change.endsOn === null) return `from ${day(change.startsOn)} until further notice`
-  return change.startsOn === change.endsOn ? day(change.startsOn) : `${day(change.startsOn)} to ${day(change.endsOn)}`
+  if (change.startsOn === change.endsOn) return day(change.startsOn)
+  const sameYear = change.startsOn.slice(0, 4) === change.endsOn.slice(0, 4)
+  const from = sameYear ? day(change.startsOn).replace(/ [0-9]+$/, '') : day(change.startsOn)
+  return `${from} to ${day(change.endsOn)}`
 }
 
 /** What a change does to counts, orders and reorder points, by where it stands. */
@@ -37,7 +40,7 @@ function effect(change: Pick<PlannedChange, 'kind' | 'state' | 'endsOn'>): strin
   }
   if (state === 'past') return 'Its counts are read with it in mind, so later levels do not grow or shrink by it.'
   if (state === 'ahead') return 'Reorder points follow from one protection time ahead.'
-  return 'Reorder points follow it now, and go back to the usual before it ends.'
+  return `Reorder points follow it now${change.endsOn === null ? '' : ', and go back to the usual before it ends'}.`
 }
 
 /** Planned changes of use, and closures. */
@@ -65,8 +68,8 @@ export const plannedWords = {
       : names.length <= 3
         ? names.join(', ')
         : `${names.slice(0, 2).join(', ')} and ${quantity(names.length - 2)} more`,
-  about: (places: number): string => `about ${counted(places, 'place')}`,
-  by: (name: string): string => (name ? `planned by ${name}` : ''),
+  about: (places: number): string => counted(places, 'place'),
+  by: (name: string): string => (name ? `Planned by ${name}.` : ''),
   seen: (change: Pick<PlannedChange, 'factor' | 'seen'>): string | null => {
     const { seen, factor } = change
     if (!seen || factor === null) return null

@@ -15,6 +15,9 @@ const stateWords: Record<OrderState, string> = {
   'recorded-elsewhere': 'recorded elsewhere',
 }
 
+/** "Alder supply room" in a narrow column: "Alder". */
+export const shortRoom = (name: string): string => name.replace(/ (supply room|store ?room|store|room)$/i, '')
+
 /** Units of a line that are still to come. */
 export const openUnits = (line: Pick<Line, 'units' | 'receivedUnits' | 'cancelledUnits'>): number =>
   Math.max(0, line.units - line.receivedUnits - line.cancelledUnits)
@@ -135,15 +138,15 @@ type GapSlot = GapAhead['slots'][number]
 
 /** Orders before a holiday: what would not last over it, and by which order to bring it. */
 export const holidayWords = {
-  tab: 'Before the holiday',
+  tab: 'Holiday',
   lead: 'What would not last over the closed days, by the order that should bring it. Estimates from counts.',
-  heading: (gap: Gap): string => `${gap.name}, ${gap.supplierName}`,
+  heading: (gap: Gap): string => `Before ${gap.name}: ${gap.supplierName}`,
   times: (gap: Gap, at: Moment): string =>
     `Last order ${dayAndClock(gap.lastOrderBy, at.zone)}; it comes ${weekdayOf(gap.lastArrival, at.zone)}. First delivery after it: ${weekdayOf(gap.nextArrival, at.zone)}.`,
   slot: (slot: Pick<GapSlot, 'orderBy'>, at: Moment): string => `Order by ${dayAndClock(slot.orderBy, at.zone)}`,
   comes: (slot: Pick<GapSlot, 'arrives'>, at: Moment): string => `comes ${weekdayOf(slot.arrives, at.zone)}`,
   line: 'to have by then',
-  needed: (units: number): string => `needs ${quantity(units)}`,
+  needed: (row: GapSlot['rows'][number]): string => `needs ${quantity(row.needed)} · ${shortRoom(row.roomName)}`,
   shelf: 'shelf too small',
   shelfWhat: 'The shelf cannot take all of it. Bring the rest by the latest order, or keep it elsewhere.',
   columns: { needed: 'To have, estimate', packs: 'Works out at', draft: 'Draft' },
