@@ -22,7 +22,7 @@ function inputRows(policy: WhyPolicy, c: Computed): { label: string; value: stri
       label: 'Counts',
       value: c.demand ? `${quantity(c.demand.intervals)} over ${quantity(Math.round(c.demand.days))} days` : 'none',
     },
-    { label: 'Count until that order', value: c.reviewPeriodDays > 0 ? dayCount(c.reviewPeriodDays) : 'no wait' },
+    { label: 'Until that order', value: c.reviewPeriodDays > 0 ? dayCount(c.reviewPeriodDays) : 'no wait' },
     { label: 'Delivery', value: deliveryWords(policy, c) },
     { label: 'Has to last', value: dayCount(c.protectionDays) },
     { label: 'Aim', value: `1 in ${quantity(oddsIn(policy.target))} (${percent(policy.target)})` },
@@ -34,19 +34,23 @@ function inputRows(policy: WhyPolicy, c: Computed): { label: string; value: stri
   return rows
 }
 
-/** Shares near an aim need as many decimals as the aim has nines. */
-const exact = (part: number, aim: number): string =>
-  `${decimal(part * 100, Math.max(2, Math.ceil(-Math.log10(1 - aim))))} %`
+/** So many decimals of a percentage that two shares which differ also read differently. */
+function decimalsFor(a: number, b: number): number {
+  let digits = 2
+  while (digits < 8 && decimal(a * 100, digits) === decimal(b * 100, digits)) digits += 1
+  return digits
+}
 
 /** A term of the formula stays on one line. */
 const unbroken = (term: string): string => term.replaceAll(' ', '\u00a0')
 
 /** The formula with the values put in, on one line. */
 function formula(figures: StretchFigures, c: Computed, aim: number): string {
-  const probability = (level: number, part: number): string =>
-    unbroken(`P(use ≤ ${quantity(level)}) = ${exact(part, aim)}`)
+  const digits = decimalsFor(figures.short ?? 0, aim)
+  const part = (value: number): string => `${decimal(value * 100, digits)} %`
+  const probability = (level: number, value: number): string => unbroken(`P(use ≤ ${quantity(level)}) = ${part(value)}`)
   const reached = probability(figures.level, figures.reached)
-  const wanted = unbroken(exact(aim, aim))
+  const wanted = unbroken(part(aim))
   const chain =
     figures.short === null
       ? `${reached} ≥ ${wanted}`

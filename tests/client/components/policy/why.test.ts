@@ -137,6 +137,14 @@ describe('why, in plain words', () => {
   })
 })
 
+describe('the formula', () => {
+  it('takes as many decimals as show on which side of the aim a level lies', () => {
+    const figures = { level: 54, reached: 0.98334, short: 0.979996 } as Parameters<typeof workingWords.formula>[0]
+    const formula = workingWords.formula(figures, whyOf().computed!, 0.98).replaceAll('\u00a0', ' ')
+    expect(formula).toContain('P(use ≤ 53) = 97.9996 % < 98 % ≤ P(use ≤ 54) = 98.334 %')
+  })
+})
+
 describe('why, without a network', () => {
   it('is worked out on the phone to the unit, from the input it keeps', async () => {
     const kept = { binId: '1', reorderPoint: 40, parLevel: 90, meanPerDay: 5, variancePerDay: 8, input }
