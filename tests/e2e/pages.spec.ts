@@ -11,6 +11,10 @@ async function pathsOf(): Promise<Record<string, string[]>> {
     items: { id: string; state: string }[]
   }
   const order = orders.find((o) => o.state === 'draft') ?? orders[0]!
+  const { items: calendars } = (await (await record.api.get('/api/v1/calendars')).json()) as { items: { id: string }[] }
+  const { items: changes } = (await (await record.api.get('/api/v1/planned-changes?show=all')).json()) as {
+    items: { id: string }[]
+  }
   await record.api.dispose()
   return {
     nurse: [
@@ -33,8 +37,15 @@ async function pathsOf(): Promise<Record<string, string[]>> {
       `/hospital/items/${bin.itemId}`,
       '/hospital/bins/new',
       '/hospital/suppliers',
+      '/hospital/calendars',
+      '/hospital/calendars/new',
+      ...calendars.slice(0, 1).map((calendar) => `/hospital/calendars/${calendar.id}`),
+      '/planned-changes',
+      '/planned-changes/new',
+      ...changes.slice(0, 1).map((change) => `/planned-changes/${change.id}`),
+      '/restock/holiday',
     ],
-    reviewer: ['/', '/review', `/review/${bin.id}`],
+    reviewer: ['/', '/review', `/review/${bin.id}`, `/rooms/${room.id}`, '/planned-changes'],
     admin: ['/', '/hospital/people', '/hospital/settings', '/hospital/people/new'],
   }
 }

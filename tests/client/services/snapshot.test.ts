@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest'
 import { overlayBins, overlayLines } from '#src/services/overlay.ts'
 import { mergeSnapshot } from '#src/services/snapshot.ts'
+import { dueReason } from '#src/stores/round.ts'
 import { aBin, aSnapshot, anEntry, NOW } from '#tests/support/count-factories.ts'
 
 describe('mergeSnapshot', () => {
@@ -42,6 +43,23 @@ describe('mergeSnapshot', () => {
 describe('overlay', () => {
   const room = mergeSnapshot(null, aSnapshot({ bins: [aBin('1'), aBin('2')] }), NOW)
   const bin = (entries: ReturnType<typeof anEntry>[], now = NOW) => overlayBins(room, entries, now)[0]
+
+  it('keeps a closed place quiet until its closure ends, also without a network', () => {
+    const day = 86_400_000
+    const iso = (ms: number): string => new Date(ms).toISOString()
+    const shut = aBin('1', {
+      onHand: 2,
+      lastCount: { quantity: 2, effectiveAt: iso(NOW - 30 * day) },
+      closed: { from: iso(NOW - day), until: iso(NOW + day) },
+      states: ['ok'],
+    })
+    const at = (now: number) => overlayBins(mergeSnapshot(null, aSnapshot({ bins: [shut] }), NOW), [], now)[0]!
+    expect(at(NOW)).toMatchObject({ states: ['ok'], closed: shut.closed })
+    expect(dueReason(at(NOW), NOW)).toBeNull()
+    expect(at(NOW + 2 * day).closed).toBeNull()
+    expect(at(NOW + 2 * day).states).toEqual(expect.arrayContaining(['below', 'count-overdue']))
+    expect(dueReason(at(NOW + 2 * day), NOW + 2 * day)).toBe('count-overdue')
+  })
 
   it('shows a count made here until the record has it', () => {
     expect(bin([anEntry(1, 'count', { quantity: 30 })])).toMatchObject({ onHand: 30, waiting: true, under: 0 })
