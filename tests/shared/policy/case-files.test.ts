@@ -2,7 +2,10 @@ import { describe, expect, it } from 'vitest'
 import file from '#tests/fixtures/stats/reorder.open.json' with { type: 'json' }
 import computed from '#tests/fixtures/stats/policy-cases.json' with { type: 'json' }
 import type { PolicyInput } from '#shared/policy/policy-input.ts'
+import { negativeBinomialLaw } from '#shared/policy/count-laws.ts'
 import { reorderPoint } from '#shared/policy/reorder-point.ts'
+import { integerQuantile } from '#shared/stats/integer-quantile.ts'
+import { likeliestNegativeBinomial } from './likeliest-negative-binomial.ts'
 
 interface Row {
   id: number
@@ -18,7 +21,7 @@ interface Row {
   fragile: boolean
 }
 
-/** How each method of the case file is asked for; the two that are no method of the interface are left out. */
+/** How each method of the case file is asked for; the two that are no method of the interface are asserted below. */
 const asked: Record<string, (row: Row) => Partial<PolicyInput>> = {
   normal_plugin: () => ({ method: 'normal', estimate: 'plug-in' }),
   normal_predictive_t: () => ({ method: 'normal', estimate: 'predictive' }),
@@ -52,7 +55,7 @@ const asked: Record<string, (row: Row) => Partial<PolicyInput>> = {
     order: { quantity: options!.Q! },
   }),
 }
-const LEFT_OUT = ['nb_mle', 'compound_poisson']
+const NO_METHOD = ['nb_mle', 'compound_poisson']
 
 const inputOf = (row: Row): PolicyInput => ({
   intervals: row.history!.map(({ days, consumption, stockout }) => ({
@@ -76,7 +79,7 @@ const rows = file.rows as unknown as Row[]
 describe('reorder.open.json (R 4.2.2, agreed by an independent SciPy program)', () => {
   it('covers every method of the interface', () => {
     const methods = new Set(rows.map((row) => row.method))
-    expect([...methods].filter((method) => !(method in asked)).sort()).toEqual([...LEFT_OUT].sort())
+    expect([...methods].filter((method) => !(method in asked)).sort()).toEqual([...NO_METHOD].sort())
   })
 
   for (const row of rows.filter(({ method }) => method in asked)) {
@@ -98,6 +101,66 @@ describe('reorder.open.json (R 4.2.2, agreed by an independent SciPy program)', 
     })
   }
 })
+
+describe('what the interface has no method for', () => {
+  for (const row of rows.filter(({ method }) => method === 'nb_mle'))
+    it(`${row.id} ${row.tag}: the likeliest negative binomial, and its level as known demand`, () => {
+      const { expected } = row
+      const seen = row.history!.map(({ days, consumption }) => ({ days, quantity: consumption }))
+      const likeliest = likeliestNegativeBinomial(seen)
+      near(likeliest.meanPerDay, expected.mu, 1e-5)
+      near(likeliest.ratio, expected.w_mle, 1e-4)
+      near(likeliest.logLikelihood, expected.loglik, 1e-9)
+      const got = reorderPoint({
+        demand: { meanPerDay: expected.mu!, variancePerDay: expected.mu! * expected.w_mle! },
+        leadTime: { meanDays: row.lead_time_mean_days },
+        reviewPeriodDays: row.review_period_days,
+        serviceLevel: row.service_level,
+        method: 'negative-binomial',
+      })
+      expect(got.reorderPoint).toBe(expected.reorder_point)
+      near(got.achieved, expected.cdf_at, 1e-8)
+      near(got.protectionDemand!.variance, expected.ltd_var)
+    })
+
+  for (const row of rows.filter(({ method }) => method === 'compound_poisson'))
+    it(`${row.id} ${row.tag}: issues of several units, by Panjer's recursion and our quantile of it`, () => {
+      const { expected } = row
+      const { orders_per_day, size_pmf } = row.options as unknown as { orders_per_day: number; size_pmf: number[] }
+      const days = row.lead_time_mean_days + row.review_period_days
+      const cdf = compoundPoissonCdf(orders_per_day * days, size_pmf)
+      expect(integerQuantile(cdf, row.service_level)).toBe(expected.reorder_point)
+      near(cdf(expected.reorder_point!), expected.cdf_at)
+      near(cdf(expected.reorder_point! - 1), expected.cdf_below)
+    })
+
+  it('logarithmic sizes make the negative binomial (M. H. Quenouille, Biometrics 5, 1949)', () => {
+    const [mean, ratio] = [12, 3]
+    const q = 1 - 1 / ratio
+    const sizes = Array.from({ length: 400 }, (_, j) => -(q ** (j + 1)) / ((j + 1) * Math.log(1 - q)))
+    const cdf = compoundPoissonCdf((mean / (ratio - 1)) * Math.log(ratio), sizes)
+    const law = negativeBinomialLaw(mean, mean * ratio)
+    for (const r of [0, 5, 12, 30, 60]) expect(Math.abs(cdf(r) - law.cdf(r))).toBeLessThan(1e-12)
+  })
+})
+
+/** g_0 = exp(-m), g_s = (m/s) sum of j f_j g_(s-j). Source: H. H. Panjer, ASTIN Bulletin 12 (1981). */
+function compoundPoissonCdf(issues: number, sizes: readonly number[]): (r: number) => number {
+  const masses = [Math.exp(-issues)]
+  const massAt = (s: number): number => {
+    for (let at = masses.length; at <= s; at++) {
+      let sum = 0
+      for (let j = 1; j <= Math.min(at, sizes.length); j++) sum += j * sizes[j - 1]! * masses[at - j]!
+      masses.push((issues / at) * sum)
+    }
+    return masses[s]!
+  }
+  return (r) => {
+    let reached = 0
+    for (let s = 0; s <= r; s++) reached += massAt(s)
+    return reached
+  }
+}
 
 describe('policy-cases.json (make_policy_cases.py: SciPy, written apart from this code)', () => {
   computed.rows.forEach((row, i) => {

@@ -69,6 +69,9 @@ describe('loss.json (mpmath, 40-50 digits)', () => {
       const got = lossOf[row.family]!(row.r, row.params as unknown as Params)
       const allowed = row.loss > 1e-12 ? 1e-9 * row.loss : 1e-12
       expect(Math.abs(got - row.loss)).toBeLessThanOrEqual(allowed)
+      // What is left over, r - m + L(r), keeps the absolute accuracy of its terms.
+      const left = row.r - row.mean + got
+      expect(Math.abs(left - row.complementary)).toBeLessThanOrEqual(1e-9 * Math.max(row.loss, Math.abs(row.r), 1))
     })
   }
 })
