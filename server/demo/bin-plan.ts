@@ -2,7 +2,7 @@ import { makeShelfCode } from '#shared/barcode/shelf-code.ts'
 import { randomBytesOf, seededRandom } from '#shared/kernel/random.ts'
 import { negativeBinomialQuantile } from '#shared/stats/negative-binomial-quantile.ts'
 import { hospital, rooms, suppliers, type DemoRoom } from './catalogue/places.ts'
-import { items, type DemoItem } from './catalogue/items.ts'
+import { items, type DemoItem, type DemoUse } from './catalogue/items.ts'
 import type { Shape } from './catalogue/item-row.ts'
 import { story, type StoryPlace } from './story.ts'
 
@@ -105,8 +105,21 @@ function overflowPlan(main: BinPlan, index: number): BinPlan {
   }
 }
 
+const ownUses = (room: DemoRoom): { item: DemoItem; use: DemoUse }[] =>
+  items.flatMap((item) => item.uses.filter((u) => u.roomKey === room.key).map((use) => ({ item, use })))
+
+/** Of the items that stand in all the rooms it is like, every second: enough to learn from one another. */
+function likeUses(room: DemoRoom, like: readonly string[]): { item: DemoItem; use: DemoUse }[] {
+  const shared = items.filter((item) => like.every((key) => item.uses.some((u) => u.roomKey === key)))
+  return shared.flatMap((item, i) => {
+    const use = item.uses.find((u) => u.roomKey === like[0])!
+    const share = 0.6 + 0.8 * seededRandom(`${demoSeed}/like/${room.code}/${item.code}`)()
+    return i % 2 === 0 ? [{ item, use: { ...use, meanPerDay: use.meanPerDay * share } }] : []
+  })
+}
+
 function plansOfRoom(room: DemoRoom): BinPlan[] {
-  const here = items.flatMap((item) => item.uses.filter((u) => u.roomKey === room.key).map((use) => ({ item, use })))
+  const here = room.like ? likeUses(room, room.like) : ownUses(room)
   const mains = here.map(({ item, use }, i) => planOf(room, item, i, use.meanPerDay, use.shape))
   const overflow = mains.filter((p) => story.overflow.some((place) => is(place, p.room, p.item)))
   return [...mains, ...overflow.map((main, i) => overflowPlan(main, mains.length + i))]

@@ -8,6 +8,7 @@ import { observeAllLeadTimes } from '../replenishment/lead-times.service.ts'
 import { loadCatalogue } from './catalogue-load.ts'
 import { alone, listMarkers, listTouched } from './demo.repository.ts'
 import { makeEmptyHospital } from './empty-hospital.ts'
+import { decide } from './decisions.ts'
 import { loadFirstHistory, marker } from './history-load.ts'
 import { liveOn } from './live-on.ts'
 import { computeDemoPolicies } from './policies.ts'
@@ -68,6 +69,7 @@ interface Progress {
   began: number
   to: number
   hasOrders: boolean
+  hasDecided: boolean
   livedTo: number | null
   settledTo: number | null
 }
@@ -83,6 +85,7 @@ async function progressOf(db: Db): Promise<Progress> {
     began: Date.parse(made.began!),
     to: Date.parse(made.to!),
     hasOrders: newest('demo-orders') !== undefined,
+    hasDecided: newest('demo-decided') !== undefined,
     livedTo: moment(newest('demo-lived')?.to),
     settledTo: moment(newest('demo-settled')?.to),
   }
@@ -92,6 +95,7 @@ async function progressOf(db: Db): Promise<Progress> {
 async function bringUp(db: Db, clock: Clock, say: Say): Promise<void> {
   const before = await progressOf(db)
   if (before.livedTo === null) await loadFirstHistory(db, clock, before, say)
+  if (!before.hasDecided) await decide(db, clock)
   const { began, livedTo, settledTo } = await progressOf(db)
   const from = livedTo ?? before.to
   await tryToLiveOn(db, clock, { began, from }, say)

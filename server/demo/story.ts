@@ -44,4 +44,33 @@ export const story = {
   partReceived: places('ROW-1', 'TH-001', 'TH-003'),
   /** A working day or two late, still believed. */
   lateBelieved: { room: 'CED-1', item: 'FL-042' },
+  /** A ward that moved: its counts begin anew, and like wards help. */
+  moved: { room: 'POP-1', daysAgo: 24, by: '3012', reason: 'Poplar moved into the new wing, with other beds' },
+  /** Changes people know of; days from the first start. */
+  ahead: [
+    {
+      name: 'Second hip list',
+      room: 'ROW-1',
+      items: ['TH-001', 'TH-003'],
+      kind: 'cases',
+      unitsPerCase: 2,
+      casesPerDay: 3,
+      weekdays: '24',
+      from: 12,
+      to: 68,
+      reason: 'Theatre 3 opens a second list on Tuesdays and Thursdays',
+    },
+    {
+      name: 'New floor in Osier',
+      room: 'OSI-1',
+      items: [],
+      kind: 'closed',
+      unitsPerCase: null,
+      casesPerDay: null,
+      weekdays: '',
+      from: 25,
+      to: 34,
+      reason: 'Patients lie in Linden and Maple meanwhile',
+    },
+  ],
 } as const

@@ -32,7 +32,7 @@ describe('the catalogue of the demo hospital', () => {
   it('is as large as promised', () => {
     expect(wards.length).toBeGreaterThanOrEqual(5)
     expect(new Set(wards.map((w) => w.kind)).size).toBeGreaterThanOrEqual(5)
-    expect(rooms.length).toBe(8)
+    expect(rooms.length).toBe(12)
     expect(plans.length).toBeGreaterThanOrEqual(300)
     expect(items.length).toBeGreaterThanOrEqual(180)
     expect(suppliers.filter((s) => s.kind === 'stores').length).toBe(1)

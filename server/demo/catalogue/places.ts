@@ -30,6 +30,10 @@ export const wards: Omit<Ward, 'id' | 'retired' | 'calendarId'>[] = [
   { code: 'ELD', name: 'Elder', kind: 'emergency', site: 'Front building' },
   { code: 'HAZ', name: 'Hazel', kind: 'children', site: 'Garden wing' },
   { code: 'ROW', name: 'Rowan', kind: 'theatre', site: 'Main building' },
+  { code: 'LIN', name: 'Linden', kind: 'general', site: 'Main building' },
+  { code: 'MAP', name: 'Maple', kind: 'general', site: 'Front building' },
+  { code: 'OSI', name: 'Osier', kind: 'general', site: 'Front building' },
+  { code: 'POP', name: 'Poplar', kind: 'general', site: 'Garden wing' },
 ]
 
 export interface DemoRoom {
@@ -42,6 +46,8 @@ export interface DemoRoom {
   /** Weekdays on which it is counted, as digits; every day without it. */
   countDays?: string
   mode: Room['mode']
+  /** It holds what stands in all of these rooms, used as it is in the first of them, give or take. */
+  like?: string[]
 }
 
 /** Rooms by what they are for: medical, surgical, intensive care, emergency, children, theatres. */
@@ -62,6 +68,12 @@ export const rooms: DemoRoom[] = [
     countDays: '12345',
     mode: 'as-before',
   },
+  ...[
+    { key: 'L1', code: 'LIN-1', name: 'Linden supply room', ward: 'LIN', countEveryDays: 4 },
+    { key: 'M1', code: 'MAP-1', name: 'Maple supply room', ward: 'MAP', countEveryDays: 5 },
+    { key: 'O1', code: 'OSI-1', name: 'Osier supply room', ward: 'OSI', countEveryDays: 4 },
+    { key: 'P1', code: 'POP-1', name: 'Poplar supply room', ward: 'POP', countEveryDays: 6 },
+  ].map((room) => ({ ...room, mode: 'calculated' as const, like: ['A1', 'B1'] })),
 ]
 
 /** Central stores and three invented suppliers; delivery times as they state them, in days. */
