@@ -10,6 +10,7 @@ import { duplicateKey, isDuplicate, isRetryable, isUnreachable } from '../db/err
 import { inTransaction } from '../db/transaction.ts'
 import type { Actor } from '../http/context.ts'
 import { illFormedAt, wellFormed } from '../http/well-formed.ts'
+import { observeEntry } from '../replenishment/lead-times.service.ts'
 import { payloadHash } from './canonical.ts'
 import {
   closeQuarantine,
@@ -191,6 +192,7 @@ async function record(
   ])
   await insertMovements(tx, rows)
   for (const end of ends) await refold(tx, now, end.binId)
+  await observeEntry(tx, operation)
   await settle(tx, now, judged, flags)
   await closeQuarantine(tx, operation.opId, now)
   if (judged.attention) await openAttentionFor(tx, now, actor, batch, judged.attention, received)

@@ -1,10 +1,8 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
-import { inTransaction } from '#server/db/transaction.ts'
 import { leadTimeObservations } from '#server/policy/policy.tables.ts'
-import { observeAllLeadTimes, observeEntry } from '#server/replenishment/lead-times.service.ts'
+import { observeAllLeadTimes } from '#server/replenishment/lead-times.service.ts'
 import type { Bin } from '#shared/contracts/bins.ts'
 import type { Item, Room, Supplier } from '#shared/contracts/catalogue.ts'
-import type { Operation } from '#shared/contracts/counts.ts'
 import type { Order } from '#shared/contracts/replenishment.ts'
 import { startTestApp, type Caller, type TestApp } from '../support/app.ts'
 import { makeBin, makeItem, makeRoom, makeSupplier, operation, sync, type SyncReply } from '../support/factories.ts'
@@ -44,9 +42,6 @@ async function entered(iso: string, ...fields: Record<string, unknown>[]): Promi
   const items = fields.map((f) => operation(app, f))
   const reply = (await sync(app, coordinator, items)).body as SyncReply
   expect(reply.results.every((r) => r.status.startsWith('accepted'))).toBe(true)
-  await inTransaction(app.database.db, async (tx) => {
-    for (const one of items) await observeEntry(tx, one as Operation)
-  })
   return items.map((one) => String(one.opId))
 }
 
