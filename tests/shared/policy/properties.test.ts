@@ -40,7 +40,7 @@ describe('a reorder point never falls', () => {
   it('when like wards use more or more is thrown away, with counts and before the first', () => {
     fc.assert(
       fc.property(
-        fc.oneof(history, fc.constant([])),
+        fc.oneof(history, fc.constant<{ days: number; quantity: number }[]>([])),
         rate,
         days,
         level,
