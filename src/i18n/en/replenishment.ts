@@ -154,7 +154,7 @@ export const holidayWords = {
     `${quantity(row.onHand)} on hand${row.onOrder > 0 ? ` and ${quantity(row.onOrder)} on order` : ''}. An estimated ${quantity(row.needed)} should stand here to last until the delivery after ${gap.name}, at this place’s own aim.`,
   addAll: (n: number): string => `Add ${n === 1 ? 'it' : `all ${quantity(n)}`} to a draft`,
   added: (order: Pick<Order, 'number' | 'supplierName'>, n: number): string =>
-    `${counted(n, 'item')} in draft ${order.number} for ${order.supplierName}.`,
+    `${counted(n, 'item')} in ${order.number} for ${order.supplierName}.`,
   nothing: 'Everything lasts over it',
   nothingWhat:
     'Every counted place of this supplier has enough until the first delivery after it, with what is on order.',

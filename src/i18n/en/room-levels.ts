@@ -71,6 +71,6 @@ export const roomLevelWords = {
       return `${name} is kept by the levels people entered; what is worked out stands beside them from now on.`
     const vital =
       levels.vital > 0 && !mine ? ` ${counted(levels.vital, 'vital place')} of it will wait for the reviewer.` : ''
-    return `${name} is kept by what is worked out. Its levels follow within a few minutes.${vital}`
+    return `${name} is kept by what is worked out. Its levels follow in a moment.${vital}`
   },
 } as const
