@@ -4,6 +4,7 @@ import { createServer, type Server } from 'node:http'
 import { hostname } from 'node:os'
 import { join } from 'node:path'
 import { fileURLToPath } from 'node:url'
+import { checkStatistics } from '#shared/stats/self-check.ts'
 import { createApp } from './app.ts'
 import { systemClock, type Clock } from './clock.ts'
 import { newestRecord } from './counts/levels.service.ts'
@@ -38,6 +39,8 @@ export async function serve(
   around: Around,
 ): Promise<{ stop: () => Promise<void>; url: string }> {
   const env = settings(source)
+  // A library that came in with another version and gives other figures must not decide on reorder points.
+  checkStatistics()
   const { protectedByRights } = await migrateDatabase({
     adminUrl: env.adminUrl,
     appUrl: env.databaseUrl,

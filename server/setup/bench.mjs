@@ -9,7 +9,7 @@ import { run } from './say.mjs'
 
 await ensureModules()
 await ensureMariadb()
-const all = readdirSync(inRoot('tests/bench')).map((file) => file.replace(/\.bench\.ts$/, ''))
+const all = readdirSync(inRoot('tests/bench')).flatMap((file) => /^(.+)\.bench\.ts$/.exec(file)?.[1] ?? [])
 const asked = process.argv.slice(2)
 const folder = mkdtempSync(join(tmpdir(), 'brimline-bench-'))
 const database = await startMariadb(folder)

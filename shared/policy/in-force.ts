@@ -47,7 +47,8 @@ export interface Settled extends Levels {
 }
 
 const agreeing = 3
-const share = 0.1
+/** One part in so many of the figure in force. */
+const part = 10
 const units = 2
 
 type Cause = Settlement['cause']
@@ -70,8 +71,8 @@ const byPerson = new Set<Cause>(['service-level', 'mode', 'accepted'])
 
 /**
  * Which figures are in force now. They stand still while counts come and go: a calculation takes over at once when a
- * reviewer acts or a lead time, calendar or rhythm changes, or when it is higher by at least 10 % and 2 units; lower
- * only when three counts in a row agree; below a level someone entered only with a person's yes.
+ * reviewer acts or a lead time, calendar or rhythm changes, or when it is higher by at least 10 % and 2 units; lower by
+ * as much only when three counts in a row agree; below a level someone entered only with a person's yes.
  *
  * A yes once given stays: figures already below the entered level may go on falling by the rule of three counts, until
  * somebody enters a level again. Shape: `lowerCounts` counts this count too. Units: units of use.
@@ -84,12 +85,14 @@ export function settle(s: Settlement): Settled {
   const now = s.inForce?.reorderPoint ?? null
   if (s.inForce === null || now === null || atOnce.has(s.cause)) return settled(s, computed, null)
   if (computed.reorderPoint === now) return settled(s, computed, null)
-  if (computed.reorderPoint > now) {
-    const clear = computed.reorderPoint - now >= units && computed.reorderPoint >= now * (1 + share)
-    return clear ? settled(s, computed, null) : settled(s, s.inForce, pendingOf(computed, 'larger-change'))
-  }
-  return mayFall(s) ? settled(s, computed, null) : settled(s, s.inForce, pendingOf(computed, 'three-counts'))
+  if (!isClear(computed.reorderPoint, now)) return settled(s, s.inForce, pendingOf(computed, 'larger-change'))
+  if (computed.reorderPoint > now || mayFall(s)) return settled(s, computed, null)
+  return settled(s, s.inForce, pendingOf(computed, 'three-counts'))
 }
+
+/** A move worth making; smaller ones come and go with every count. */
+const isClear = (computed: number, now: number): boolean =>
+  Math.abs(computed - now) >= units && Math.abs(computed - now) >= now / part
 
 const mayFall = (s: Settlement): boolean => atOnce.has(s.cause) || s.lowerCounts >= agreeing
 

@@ -37,6 +37,12 @@ describe('settle', () => {
       })
     }
     expect(settle(given({ computed: levels(20), lowerCounts: 3 }))).toMatchObject({ reorderPoint: 20, changed: true })
+    expect(settle(given({ computed: levels(27), lowerCounts: 3 }))).toMatchObject({ reorderPoint: 27 })
+    for (const small of [levels(28), levels(29)])
+      expect(settle(given({ computed: small, lowerCounts: 9 }))).toMatchObject({
+        reorderPoint: 30,
+        pending: { waitsFor: 'larger-change' },
+      })
   })
 
   it.each(['service-level', 'calendar', 'rhythm', 'mode'] as const)(

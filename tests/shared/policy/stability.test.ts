@@ -50,7 +50,7 @@ const median = (values: number[]): number => [...values].sort((a, b) => a - b)[M
 describe('sixteen counts from the first on', () => {
   it.each([
     ['poisson', 3],
-    ['nb3', 4],
+    ['nb3', 3],
   ] as const)('%s use: the figure in force moves at most %d times in the median bin', (name, most) => {
     const truth = truthOf(name, 10)
     const computed = computedHistories(name)
