@@ -51,11 +51,19 @@ function stretchWords(c: Computed, aim: number): string {
   return `From the last count until then ${usual} go; in a bad stretch, ${atAim(aim)}, as many as ${bad}.`
 }
 
+/** What stands between the level that meets the aim and the figure; null where nothing does. */
+function limitWords({ input }: WhyPolicy, c: Computed): string | null {
+  if (c.reorderPoint === c.computedReorderPoint) return null
+  if (c.warnings.includes('floor')) return 'With the fixed minimum:'
+  return input?.capacity == null ? null : `With one pack coming, ${quantity(input.capacity)} fit on the shelf:`
+}
+
 function soWords(policy: WhyPolicy, c: Computed): string {
   const { reorderPoint: point } = policy
   if (c.reorderPoint === null) return ''
-  if (point === c.reorderPoint) return `So: order at ${quantity(point)}.`
-  const works = `That works out at ${quantity(c.reorderPoint)}.`
+  const limit = limitWords(policy, c)
+  if (point === c.reorderPoint) return `${limit ?? 'So:'} order at ${quantity(point)}.`
+  const works = `${limit ? `${limit} it` : 'That'} works out at ${quantity(c.reorderPoint)}.`
   if (point === null) return works
   if (policy.mode !== 'calculated') return `${works} In force is ${quantity(point)}, as entered.`
   return `${works} In force is ${quantity(point)} until that is settled.`

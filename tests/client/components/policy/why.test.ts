@@ -84,9 +84,11 @@ describe('why, in plain words', () => {
     )
     const small = whyOf({}, { capacity: 60 })
     small.computed!.shelfCarries = 0.9
+    expect(whyWords.plain(small, at)).toContain('With one pack coming, 60 fit on the shelf: order at 10.')
     expect(whyWords.bearing(small, aBin('1'), at)).toContain(
       'The shelf is too small for this aim: what fits lets about 1 delivery cycle in 10 run out.',
     )
+    expect(whyWords.plain(whyOf({}, { pinnedFloor: 80 }), at)).toContain('With the fixed minimum: order at 80.')
     expect(whyWords.bearing(whyOf({}, { pinnedFloor: 80 }), aBin('1'), at)).toContain(
       'A fixed minimum of 80, set by a reviewer, holds it up.',
     )
