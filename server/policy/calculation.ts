@@ -1,13 +1,14 @@
 import { nextCountAt } from '#shared/calendar/counting-calendar.ts'
 import { nextSlot } from '#shared/calendar/order-calendar.ts'
-import { orderForReopening } from '#shared/calendar/holiday-gap.ts'
+import { orderForReopening, type HolidayGap } from '#shared/calendar/holiday-gap.ts'
 import { countsKept } from '#shared/demand/counts-kept.ts'
 import { demandClass } from '#shared/demand/demand-class.ts'
 import { blendLeadTimes } from '#shared/demand/lead-times.ts'
 import { useStopped } from '#shared/demand/use-stopped.ts'
+import { computedReorderPoints } from '#shared/policy/mixture-batch.ts'
 import type { PolicyInput } from '#shared/policy/policy-input.ts'
 import type { PolicyResult } from '#shared/policy/policy-result.ts'
-import { neededOver } from '#shared/replenishment/gap-need.ts'
+import { neededUnits, overGap } from '#shared/replenishment/gap-need.ts'
 import {
   calendarOf,
   countingOf,
@@ -44,6 +45,8 @@ export interface Prepared {
   times: PlaceTimes
   /** Deliveries seen. */
   delays: number[]
+  /** The holiday gap that is near, with the calculation of what should stand there before it. */
+  ahead: { gap: HolidayGap; input: PolicyInput } | null
 }
 
 /** A calculation with what it was made from. */
@@ -76,14 +79,14 @@ export async function prepare(db: Reader, now: Date, world: World, view: BinView
   const delays = supplier ? await world.delaysOf(db, supplier.id, itemId) : []
   // A place that was never counted keeps what was entered; its peers help from the first count on.
   const pool = learned.lastCount ? await world.poolOf(db, itemId, view.row.wardKind) : null
-  const ahead = exposure.between(Date.parse(protection.countedAt), Date.parse(protection.nextArrival))
+  const exposed = exposure.between(Date.parse(protection.countedAt), Date.parse(protection.nextArrival))
   const input = policyInput({
     view,
     learned,
     protection,
     plannedChange: world.changesOn(view).some((c) => fallsInto(c, protection, world)),
     countOverdue: learned.lastCount !== null && dueCount(learned, world, times) < now.getTime(),
-    exposureAhead: ahead.days + (learned.basePerDay === null ? 0 : ahead.extraUnits / learned.basePerDay),
+    exposureAhead: exposed.days + (learned.basePerDay === null ? 0 : exposed.extraUnits / learned.basePerDay),
     observedDays: blendLeadTimes(
       delays,
       { meanDays: protection.leadMeanDays, sdDays: supplier?.leadTimeSd ?? 0 },
@@ -94,11 +97,23 @@ export async function prepare(db: Reader, now: Date, world: World, view: BinView
     aim,
     money: world.hospital,
   })
-  return { at: now, view, learned, input, protection, aim, pool, supply, times, delays }
+  const gap = gapNear(now, world, { view, supply, times })
+  const ahead = gap && { gap, input: overGap(input, Date.parse(protection.countedAt), gap.nextArrival) }
+  return { at: now, view, learned, input, protection, aim, pool, supply, times, delays, ahead }
 }
 
-/** Adds the result, and what else is worth saying about it. */
-export function complete(now: Date, world: World, prepared: Prepared, result: PolicyResult): Calculation {
+/**
+ * Adds the result, and what else is worth saying about it.
+ *
+ * @param gapPoint reorder point of `ahead.input`, where that was worked out beforehand
+ */
+export function complete(
+  now: Date,
+  world: World,
+  prepared: Prepared,
+  result: PolicyResult,
+  gapPoint: number | null = null,
+): Calculation {
   const { learned, pool, view } = prepared
   const changes = world.changesOn(view)
   const from = now.getTime()
@@ -118,7 +133,7 @@ export function complete(now: Date, world: World, prepared: Prepared, result: Po
           ? { seen: prepared.delays.length, statedDays: prepared.protection.leadMeanDays }
           : null,
       closed: closureOf(from, world, prepared, changes),
-      gap: gapFact(from, world, prepared, result),
+      gap: gapFact(world, prepared, result, gapPoint),
       basePerDay: learned.intervals.some((i) => i.used) ? learned.basePerDay : null,
       member: memberOf(prepared.input, result),
     },
@@ -198,13 +213,19 @@ function flagsBefore(until: number, world: World, supply: Prepared['supply'], ti
   return iso(before + 1)
 }
 
+function gapNear(
+  now: Date,
+  world: World,
+  { view, supply, times }: Pick<Prepared, 'view' | 'supply' | 'times'>,
+): HolidayGap | null {
+  const calendar = calendarOf(supply?.supplier ?? null, world.hospital.timeZone, times)
+  return 'leadDays' in calendar ? null : world.gapOf(calendar, { view, supply }, now.getTime())
+}
+
 /** What should stand there before a holiday gap, where that is more than the reorder point. */
-function gapFact(now: number, world: World, prepared: Prepared, result: PolicyResult): PolicyFacts['gap'] {
-  const calendar = calendarOf(prepared.supply?.supplier ?? null, world.hospital.timeZone, prepared.times)
-  if ('leadDays' in calendar || result.demand === null || result.reorderPoint === null) return null
-  const gap = world.gapOf(calendar, prepared, now)
-  if (!gap) return null
-  const level = neededOver(prepared.input, Date.parse(prepared.protection.countedAt), gap.nextArrival)
+function gapFact(world: World, { ahead }: Prepared, result: PolicyResult, gapPoint: number | null): PolicyFacts['gap'] {
+  if (ahead === null || result.demand === null || result.reorderPoint === null) return null
+  const level = neededUnits(ahead.input, gapPoint ?? computedReorderPoints([ahead.input])[0] ?? null)
   if (level <= result.reorderPoint) return null
-  return { level, orderBy: iso(gap.lastOrderBy), name: world.closed.nameOf(gap.dates) }
+  return { level, orderBy: iso(ahead.gap.lastOrderBy), name: world.closed.nameOf(ahead.gap.dates) }
 }

@@ -22,6 +22,15 @@ export async function listCurrent(db: Reader): Promise<PolicyRow[]> {
   return db.select().from(policies).where(eq(policies.isCurrent, true)).orderBy(asc(policies.binId))
 }
 
+/** What stands worked out of some bins, for a run that works out only what changed. */
+export async function listWorkedOut(db: Reader, binIds: number[]) {
+  if (binIds.length === 0) return []
+  return db
+    .select({ id: policies.id, input: policies.input, result: policies.result })
+    .from(policies)
+    .where(and(eq(policies.isCurrent, true), inArray(policies.binId, binIds)))
+}
+
 /** Results alone: the inputs they were made from are many times larger. */
 export async function listResults(db: Reader) {
   return db
@@ -48,6 +57,7 @@ export async function listFigures(db: Reader) {
       orderQuantity: policies.orderQuantity,
       sure: figure(sql`json_value(${policies.facts}, '$.sure')`),
       meanPerDay: figure(sql`json_value(${policies.result}, '$.demand.meanPerDay')`),
+      reviewPeriodDays: figure(sql`json_value(${policies.result}, '$.reviewPeriodDays')`),
     })
     .from(policies)
     .where(eq(policies.isCurrent, true))

@@ -21,6 +21,8 @@ export type Cause = Settlement['cause']
 export interface Ready {
   prepared: Prepared
   result: PolicyResult
+  /** Reorder point over a holiday gap that is near. */
+  gapPoint: number | null
   /** Since then nobody else has written: a demo being loaded. */
   isAlone: boolean
 }
@@ -41,7 +43,7 @@ export async function recompute(
   const foldedAt = await lockBins(tx, [binId])
   const before = await repo.findCurrent(tx, binId)
   if (ready !== null && isFresh(ready, foldedAt, before)) {
-    const calculation = complete(ready.prepared.at, world!, ready.prepared, ready.result)
+    const calculation = complete(ready.prepared.at, world!, ready.prepared, ready.result, ready.gapPoint)
     return keep(tx, ready.prepared.at, calculation, before, cause)
   }
   const around = world ?? (await readWorld(tx))

@@ -1,3 +1,4 @@
+import type { PolicyResult } from '#shared/policy/policy-result.ts'
 import type { Clock } from '../clock.ts'
 import { momentOf, viewBins } from '../counts/bin-view.service.ts'
 import type { Db, Reader } from '../db/client.ts'
@@ -81,9 +82,15 @@ async function workOut(db: Db, clock: Clock, part: Part, workers: PolicyWorkers)
       prepared.push(await prepare(db, clock.now(), part.world, view))
     },
   )
-  const results = await workers.compute(prepared.map((p) => p.input))
+  const results = await resultsOf(db, prepared, workers)
+  const overGap = prepared.filter((p) => p.ahead !== null)
+  const points = await workers.points(overGap.map((p) => p.ahead!.input))
+  const gapPoints = new Map(overGap.map((p, i) => [p, points[i] ?? null]))
   const ready = new Map<number, Ready>(
-    prepared.map((p, i) => [p.view.row.id, { prepared: p, result: results[i]!, isAlone: part.isAlone }]),
+    prepared.map((p, i) => [
+      p.view.row.id,
+      { prepared: p, result: results[i]!, gapPoint: gapPoints.get(p) ?? null, isAlone: part.isAlone },
+    ]),
   )
   let changed = 0
   await sideBySide(part.ids, async (id) => {
@@ -93,6 +100,21 @@ async function workOut(db: Db, clock: Clock, part: Part, workers: PolicyWorkers)
     if (answer.changed) changed += 1
   })
   return changed
+}
+
+/** Only what changed is worked out anew: equal inputs give equal results. */
+async function resultsOf(db: Db, prepared: Prepared[], workers: PolicyWorkers): Promise<PolicyResult[]> {
+  const stored = await repo.listWorkedOut(
+    db,
+    prepared.map((p) => p.view.row.id),
+  )
+  const known = new Map(stored.map((row) => [row.id, row]))
+  const kept = prepared.map((p): PolicyResult | null => {
+    const row = p.view.row.policyId === null ? undefined : known.get(p.view.row.policyId)
+    return row && JSON.stringify(row.input) === JSON.stringify(p.input) ? (row.result as PolicyResult) : null
+  })
+  const fresh = await workers.compute(prepared.flatMap((p, i) => (kept[i] ? [] : [p.input])))
+  return kept.map((result) => result ?? fresh.shift()!)
 }
 
 async function sideBySide<T>(all: readonly T[], work: (one: T) => Promise<void>): Promise<void> {

@@ -30,7 +30,7 @@ const iso = (ms: number): string => new Date(ms).toISOString()
  * Gaps whose last order is at most ten days ahead, by supplier, the nearest last order first; a ward that is closed on
  * days of its own makes one of its own.
  *
- * What should stand at a place over the gap is worked out with its policy, at its own aim (`neededOver`), and kept with
+ * What should stand at a place over the gap is worked out with its policy, at its own aim (`overGap`), and kept with
  * it: the mark on the gauge. It would not last when its position is at or below that.
  */
 async function gapsAhead(db: Reader, moment: { now: number; timeZone: string }, views: BinView[]) {

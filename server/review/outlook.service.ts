@@ -1,4 +1,5 @@
 import type { ClassOutlook } from '#shared/contracts/policy.ts'
+import { cyclesPerYear } from '#shared/policy/cycles-per-year.ts'
 import { readHospital } from '../catalogue/hospital.service.ts'
 import type { Clock } from '../clock.ts'
 import { momentOf, viewBins } from '../counts/bin-view.service.ts'
@@ -6,11 +7,9 @@ import type { Reader } from '../db/client.ts'
 import type { Actor } from '../http/context.ts'
 import { currentFigures } from '../policy/policy.service.ts'
 
-const daysPerYear = 365
-
 /**
- * What the figures in force come to in a year, by class: run-outs = Σ use a year / order quantity × (1 − chance that a
- * cycle does not run out). An estimate: it holds if counts keep their rhythm and use stays as it is.
+ * What the figures in force come to in a year, by class: run-outs = Σ delivery cycles a year × (1 − chance that one does
+ * not run out). An estimate: it holds if counts keep their rhythm and use stays as it is.
  */
 export async function readClassOutlook(db: Reader, clock: Clock, actor: Actor): Promise<{ items: ClassOutlook[] }> {
   const { timeZone, levels } = await readHospital(db)
@@ -23,7 +22,7 @@ export async function readClassOutlook(db: Reader, clock: Clock, actor: Actor): 
       const perYear = own.flatMap((v) => {
         const f = figures.get(v.row.id)
         if (!f || f.sure === null || f.meanPerDay === null || !f.orderQuantity) return []
-        return [((f.meanPerDay * daysPerYear) / f.orderQuantity) * (1 - f.sure)]
+        return [cyclesPerYear(f.meanPerDay, f.orderQuantity, f.reviewPeriodDays ?? 0) * (1 - f.sure)]
       })
       return {
         ved,

@@ -1,5 +1,5 @@
+import { cyclesPerYear } from './cycles-per-year.ts'
 import { fitMethod } from './fit-method.ts'
-import { DAYS_PER_YEAR } from './order-quantity.ts'
 import type { PolicyInput } from './policy-input.ts'
 import { policyLevels } from './policy-levels.ts'
 import type { PolicyLevels } from './policy-levels.ts'
@@ -23,7 +23,7 @@ export interface PriceOfLevel {
   meanStock: number | null
   /** Money a year for holding them: price x holding rate x mean stock; null without a price */
   holdingPerYear: number | null
-  /** Delivery cycles a year: use a year over the order quantity */
+  /** Delivery cycles a year: `cyclesPerYear` */
   cyclesPerYear: number
   /** Units a year asked for and not there; null where the method has no loss */
   shortPerYear: number | null
@@ -36,7 +36,7 @@ export interface PriceOfLevel {
  * What each of several aims would mean for one bin, so that a person can weigh stock against run-outs.
  *
  * With D units a year, Q per order, m and L(r) of the protection interval: mean stock Q/2 + r - m + L(r), units short
- * (D/Q) L(r), run-outs (D/Q)(1 - F(r)), all a year. Reorder point and order quantity are those `reorderPoint` answers
+ * (D/Q) L(r), run-outs (D/Q)(1 - F(r)), all a year; no more cycles than chances to order. Reorder point and order quantity are those `reorderPoint` answers
  * for the same input at each aim; demand is fitted once. Source: statistics, section 5; G. Hadley & T. Whitin (1963).
  *
  * @param levels aims between 0.5 and 0.9999, answered in their order
@@ -55,11 +55,11 @@ export function priceOfLevels(input: PolicyInput, levels: readonly number[]): Pr
 function priceOf(input: ResolvedInput, law: DemandLaw, levels: PolicyLevels): PriceOfLevel {
   const { point, order, usePerDay } = levels
   const { unitCost, holdingRatePerYear } = input.order
-  const cyclesPerYear = (Math.max(0, usePerDay) * DAYS_PER_YEAR) / order.units
+  const cycles = cyclesPerYear(usePerDay, order.units, input.reviewPeriodDays)
   const short = law.loss ? law.loss(point) : null
   const meanStock = short === null ? null : order.units / 2 + point - law.mean + short
   const cycleService = law.cdf(point)
-  const runOutsPerYear = cyclesPerYear * Math.max(0, 1 - cycleService)
+  const runOutsPerYear = cycles * Math.max(0, 1 - cycleService)
   return {
     serviceLevel: input.serviceLevel,
     reorderPoint: point,
@@ -69,8 +69,8 @@ function priceOf(input: ResolvedInput, law: DemandLaw, levels: PolicyLevels): Pr
     cycleService,
     meanStock,
     holdingPerYear: meanStock === null || unitCost === null ? null : unitCost * holdingRatePerYear * meanStock,
-    cyclesPerYear,
-    shortPerYear: short === null ? null : cyclesPerYear * short,
+    cyclesPerYear: cycles,
+    shortPerYear: short === null ? null : cycles * short,
     runOutsPerYear,
     yearsBetweenRunOuts: runOutsPerYear > 0 ? 1 / runOutsPerYear : null,
   }

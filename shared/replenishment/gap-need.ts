@@ -2,7 +2,6 @@ import { DateTime } from 'luxon'
 import { holidayGaps, type HolidayGap } from '#shared/calendar/holiday-gap.ts'
 import { arrivalOf, nextSlot, type OrderCalendar } from '#shared/calendar/order-calendar.ts'
 import type { PolicyInput } from '#shared/policy/policy-input.ts'
-import { reorderPoint } from '#shared/policy/reorder-point.ts'
 
 const dayMs = 86_400_000
 /** A gap is spoken of from so long before its last order. Our choice. */
@@ -56,28 +55,30 @@ function hasClosedDates(calendar: OrderCalendar, now: number): boolean {
 }
 
 /**
- * Units that should stand at a place, position counted, so that it lasts at its own aim from its last count until the
- * first delivery after a gap. An estimate.
+ * What should stand at a place, position counted, so that it lasts at its own aim from its last count until the first
+ * delivery after a gap, as a calculation: its reorder point is the answer. An estimate.
  *
  * The place's own calculation with its protection interval stretched to that delivery: lead time and the times seen of
  * deliveries stay, the review period grows; activity over the added days is taken like that over the interval before.
- * A shelf that is too small does not lower the need. 0 where there is nothing to learn from.
+ * A shelf that is too small does not lower the need.
  *
  * @param input a stored policy input
  * @param countedAt moment of the last count, epoch ms
  * @param arrival first delivery after the gap, epoch ms
  */
-export function neededOver(input: PolicyInput, countedAt: number, arrival: number): number {
+export function overGap(input: PolicyInput, countedAt: number, arrival: number): PolicyInput {
   const lead = input.leadTime.meanDays
   const before = lead + (input.reviewPeriodDays ?? 0)
   const days = Math.max(before, (arrival - countedAt) / dayMs)
   const exposure = input.protectionExposureDays
-  return (
-    reorderPoint({
-      ...input,
-      reviewPeriodDays: days - lead,
-      protectionExposureDays: exposure == null || before === 0 ? exposure : (exposure * days) / before,
-      capacity: null,
-    }).reorderPoint ?? 0
-  )
+  return {
+    ...input,
+    reviewPeriodDays: days - lead,
+    protectionExposureDays: exposure == null || before === 0 ? exposure : (exposure * days) / before,
+    capacity: null,
+  }
 }
+
+/** Units `overGap` comes to, never below a fixed minimum; 0 where there is nothing to learn from. */
+export const neededUnits = (input: PolicyInput, computed: number | null): number =>
+  Math.max(input.pinnedFloor ?? 0, computed ?? 0)

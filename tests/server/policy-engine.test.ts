@@ -391,6 +391,9 @@ describe('a run over every place', () => {
     const workers = startPolicyWorkers(2)
     try {
       expect(await workers.compute(inputs)).toEqual(inputs.map((input) => reorderPoint(input)))
+      const seen = { ...inputs[0]!, leadTime: { meanDays: 2, observedDays: [1, 2, 5] } }
+      const more = [...inputs, seen, { ...inputs[1]!, intervals: [] }]
+      expect(await workers.points(more)).toEqual(more.map((input) => reorderPoint(input).computedReorderPoint))
     } finally {
       await workers.stop()
     }

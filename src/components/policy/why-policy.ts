@@ -72,9 +72,3 @@ export async function whyFromPhone(kept: SnapshotPolicy, bin: Bin, mode: BinPoli
     entered: bin.enteredReorderPoint,
   }
 }
-
-/** Delivery cycles a year of one place: what it uses over what it orders at a time; null where neither is known. */
-export function cyclesPerYear(meanPerDay: number, orderQuantity: number | null): number | null {
-  if (!(meanPerDay > 0) || !orderQuantity) return null
-  return (meanPerDay * 365) / orderQuantity
-}

@@ -1,6 +1,8 @@
 import { describe, expect, it } from 'vitest'
 import type { OrderCalendar } from '#shared/calendar/order-calendar.ts'
-import { gapOf, neededOver } from '#shared/replenishment/gap-need.ts'
+import { computedReorderPoints } from '#shared/policy/mixture-batch.ts'
+import type { PolicyInput } from '#shared/policy/policy-input.ts'
+import { gapOf, neededUnits, overGap } from '#shared/replenishment/gap-need.ts'
 
 const at = (iso: string): number => Date.parse(iso)
 
@@ -55,6 +57,10 @@ describe('what should stand there over a gap', () => {
     capacity: 5,
   }
   const day = 86_400_000
+  const neededOver = (given: PolicyInput, countedAt: number, arrival: number): number => {
+    const stretched = overGap(given, countedAt, arrival)
+    return neededUnits(stretched, computedReorderPoints([stretched])[0] ?? null)
+  }
 
   it('lasts from the count to the delivery after it, whatever the shelf holds', () => {
     // Tables of the Poisson distribution: mean 10, 0.9165 up to 14, 0.9513 up to 15.

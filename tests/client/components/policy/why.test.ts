@@ -3,7 +3,8 @@ import type { BinPolicy } from '#shared/contracts/policy.ts'
 import type { PolicyInput } from '#shared/policy/policy-input.ts'
 import { reorderPoint } from '#shared/policy/reorder-point.ts'
 import { stretchFigures } from '#src/components/policy/demand-picture.ts'
-import { cyclesPerYear, whyFromPhone, type Computed, type WhyPolicy } from '#src/components/policy/why-policy.ts'
+import { cyclesPerYear } from '#shared/policy/cycles-per-year.ts'
+import { whyFromPhone, type Computed, type WhyPolicy } from '#src/components/policy/why-policy.ts'
 import { learningWords, policyWords, whyWords, workingWords } from '#src/i18n/en.ts'
 import { aBin } from '#tests/support/count-factories.ts'
 
@@ -117,13 +118,14 @@ describe('why, in plain words', () => {
     const why = whyOf({ reorderPoint: 90 })
     why.computed = { ...why.computed!, reorderPoint: 40, achieved: 0.995 }
     // 5 a day in packs of 50: 36.5 cycles a year; one in 1,000 of them is once in 27 years.
-    expect(whyWords.odds(why, 0.999, cyclesPerYear(5, 50))).toEqual([
+    expect(whyWords.odds(why, 0.999, cyclesPerYear(5, 50, 1))).toEqual([
       'At 90 about 1 delivery cycle in 1,000 runs out; this place about once in 27 years.',
       'At the 40 worked out it would be about 1 delivery cycle in 200.',
       expect.stringContaining('if counts keep their rhythm'),
     ])
-    expect(cyclesPerYear(2, 50)).toBeCloseTo(14.6)
-    expect(cyclesPerYear(0, 50)).toBeNull()
+    expect(cyclesPerYear(2, 50, 0)).toBeCloseTo(14.6)
+    // Ten a day in packs of ten, a chance to order once a week: 52 orders a year, not 365.
+    expect(cyclesPerYear(10, 10, 7)).toBeCloseTo(52.14, 2)
   })
 
   it('puts the values into the formula so that the smallest level that will do can be checked by eye', async () => {
