@@ -135,6 +135,7 @@ export function complete(
       closed: closureOf(from, world, prepared, changes),
       gap: gapFact(world, prepared, result, gapPoint),
       basePerDay: learned.intervals.some((i) => i.used) ? learned.basePerDay : null,
+      rhythmDays: learned.rhythmDays,
       member: memberOf(prepared.input, result),
     },
   }

@@ -1,4 +1,4 @@
-import type { BinPolicy } from '#shared/contracts/policy.ts'
+import type { BinPolicy, CauseOfMove } from '#shared/contracts/policy.ts'
 import type { PoolMember } from '#shared/policy/pool.ts'
 
 /**
@@ -18,12 +18,14 @@ export interface PolicyFacts {
   gap: { level: number; orderBy: string; name: string } | null
   /** Usual use a day, planned extra units taken off. */
   basePerDay: number | null
+  /** Days expected between counts. */
+  rhythmDays: number
   /** What it tells its like; null before there is an interval. */
   member: Omit<PoolMember, 'key' | 'wardId'> | null
   /** Estimated chance that one delivery cycle does not run out with the figure in force; null where nobody can say. */
   sure: number | null
   /** What keeps the calculation apart from the figure in force; empty where it is in force. */
-  pendingCauses: { what: string; units: number }[]
+  pendingCauses: CauseOfMove[]
   /** What moved the figure when this row was written. */
-  moved: { what: string; units: number }[]
+  moved: CauseOfMove[]
 }

@@ -72,10 +72,13 @@ export async function insertPolicy(tx: Tx, row: typeof policies.$inferInsert): P
   return made!.id
 }
 
-/** What a row was computed from. */
-export async function findInput(db: Reader, id: number): Promise<unknown> {
-  const [row] = await db.select({ input: policies.input }).from(policies).where(eq(policies.id, id))
-  return row?.input ?? null
+/** What a row was computed from, and what was learnt beside it. */
+export async function findBasis(db: Reader, id: number) {
+  const [row] = await db
+    .select({ input: policies.input, facts: policies.facts })
+    .from(policies)
+    .where(eq(policies.id, id))
+  return row ?? null
 }
 
 export async function updatePolicy(tx: Tx, id: number, set: Partial<PolicyRow>): Promise<void> {

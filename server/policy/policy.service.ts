@@ -1,4 +1,5 @@
 import type { PolicyInput } from '#shared/policy/policy-input.ts'
+import type { CauseOfMove } from '#shared/contracts/policy.ts'
 import { settle, type Levels, type Settlement } from '#shared/policy/in-force.ts'
 import { protectionCdf } from '#shared/policy/protection-cdf.ts'
 import type { PolicyResult } from '#shared/policy/policy-result.ts'
@@ -146,7 +147,7 @@ async function store(
     asOf: now,
     confirmedAt: now,
   }
-  const basis = known?.basisId == null ? null : await repo.findInput(tx, known.basisId)
+  const basis = known?.basisId == null ? null : await repo.findBasis(tx, known.basisId)
   const sure = sureAt(calculation, settled.reorderPoint)
   const pendingCauses = settled.pending ? causesOf(basis, calculation, known?.reorderPoint ?? null) : []
   if (known && !settled.changed && sameFigures(known, row, calculation)) {
@@ -188,11 +189,40 @@ function sureAt({ input, result }: Calculation, level: number | null): number | 
 }
 
 /** How much each group of inputs moved the figure away from the one in force. */
-function causesOf(basis: unknown, calculation: Calculation, inForce: number | null): PolicyFacts['moved'] {
+function causesOf(
+  basis: Pick<repo.PolicyRow, 'input' | 'facts'> | null,
+  calculation: Calculation,
+  inForce: number | null,
+): CauseOfMove[] {
   const computed = calculation.result.reorderPoint
   if (computed === null) return []
-  if (basis === null) return [{ what: 'entered', units: computed - (inForce ?? 0) }]
-  return splitCauses(basis as PolicyInput, calculation.input)
+  if (basis?.input == null) return [{ what: 'entered', units: computed - (inForce ?? 0) }]
+  return namedCauses(basis.input as PolicyInput, factsOf(basis)?.rhythmDays ?? null, calculation)
+}
+
+/** Half a day more or less between counts is the same rhythm. */
+const sameRhythm = 0.5
+const daysToCover = (input: PolicyInput): number => input.leadTime.meanDays + (input.reviewPeriodDays ?? 0)
+
+/**
+ * The parts of a move as people know them. Review period and lead time both move with the day a count falls on; where
+ * the rhythm of counting is the same they are one: the days to cover.
+ */
+function namedCauses(before: PolicyInput, rhythm: number | null, { input, facts }: Calculation): CauseOfMove[] {
+  const isPlanned = before.situation?.plannedChange === true || input.situation?.plannedChange === true
+  // Without a planned change it is the weekdays in the days to cover that make them busier or quieter.
+  const parts = splitCauses(before, input).map((p): CauseOfMove =>
+    p.what === 'planned-change' && !isPlanned ? { ...p, what: 'weekdays' } : p,
+  )
+  if (rhythm !== null && Math.abs(facts.rhythmDays - rhythm) >= sameRhythm)
+    return parts.map((p) => (p.what === 'rhythm' ? { ...p, from: rhythm, to: facts.rhythmDays } : p))
+  const isDays = (p: CauseOfMove): boolean => p.what === 'rhythm' || p.what === 'delivery' || p.what === 'weekdays'
+  const units = parts.filter(isDays).reduce((sum, p) => sum + p.units, 0)
+  const others = parts.filter((p) => !isDays(p))
+  if (units === 0) return others
+  const days = { what: 'days', units, from: daysToCover(before), to: daysToCover(input) }
+  const at = parts.findIndex(isDays)
+  return [...others.slice(0, at), days, ...others.slice(at)]
 }
 
 interface Figures {

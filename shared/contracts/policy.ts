@@ -32,6 +32,18 @@ export const PolicyInterval = z.object({
   why: z.string().nullable(),
 })
 
+/**
+ * A part of a move of the reorder point: `use`, `rhythm` (days between counts, from and to), `days` (days to cover, from
+ * and to), `weekdays`, `delivery`, `planned-change`, `like-wards`, `aim`, `limits`, or `entered`.
+ */
+export const CauseOfMove = z.object({
+  what: z.string(),
+  units: z.number(),
+  from: z.number().optional(),
+  to: z.number().optional(),
+})
+export type CauseOfMove = z.infer<typeof CauseOfMove>
+
 export const BinPolicy = z.object({
   binId: Id,
   mode: z.enum(['as-before', 'beside', 'calculated']),
@@ -44,7 +56,7 @@ export const BinPolicy = z.object({
     .object({
       reorderPoint: z.number().int(),
       parLevel: z.number().int().nullable(),
-      causes: z.array(z.object({ what: z.string(), units: z.number() })),
+      causes: z.array(CauseOfMove),
       waitsFor: z.string(),
     })
     .nullable(),
@@ -139,7 +151,7 @@ export const BinPolicy = z.object({
       method: z.string(),
       cause: z.string(),
       /** How much each group of inputs moved it; empty where a person's figure took over. */
-      causes: z.array(z.object({ what: z.string(), units: z.number() })),
+      causes: z.array(CauseOfMove),
       since: Instant,
     }),
   ),

@@ -1,5 +1,5 @@
 import type { Bin } from '#shared/contracts/bins.ts'
-import type { BinPolicy } from '#shared/contracts/policy.ts'
+import type { BinPolicy, CauseOfMove } from '#shared/contracts/policy.ts'
 import { dayCount, decimal, duration, odds, percent, quantity, signed } from './format.ts'
 
 export type { Computed } from '#src/components/policy/why-policy.ts'
@@ -22,10 +22,16 @@ const causeWords: Record<string, string> = {
   'like-wards': 'what like wards tell changed',
 }
 
-/** Parts of a move, before their units: "use +3, counts every 3 days +4". */
-const partWords: Record<string, (bin: Bin) => string> = {
+const otherThan = (part: CauseOfMove, words: (days: number) => string, plain: string): string =>
+  part.from === undefined || part.to === undefined ? plain : `${words(part.to)} instead of ${words(part.from)}`
+
+/** Parts of a move, before their units: "use +3, counts every 3 days instead of every day +4". */
+const partWords: Record<string, (part: CauseOfMove) => string> = {
   use: () => 'use',
-  rhythm: (bin) => (bin.countEveryDays === 1 ? 'counts every day' : `counts every ${dayCount(bin.countEveryDays)}`),
+  rhythm: (part) =>
+    otherThan(part, (days) => (days === 1 ? 'counts every day' : `counts every ${dayCount(days)}`), 'counting rhythm'),
+  days: (part) => otherThan(part, (days) => `${dayCount(days)} to cover`, 'days to cover'),
+  weekdays: () => 'weekdays in the days to cover',
   delivery: () => 'deliveries',
   'planned-change': () => 'planned change',
   'like-wards': () => 'like wards',
@@ -64,8 +70,8 @@ export const policyWords = {
   moves: (from: number | null | undefined, to: number | null): string =>
     from == null ? (to === null ? '—' : quantity(to)) : `${quantity(from)} → ${to === null ? '—' : quantity(to)}`,
   older: 'Older changes',
-  causes: (causes: readonly { what: string; units: number }[], bin: Bin): string =>
-    causes.map(({ what, units }) => `${partWords[what]?.(bin) ?? 'other figures'} ${signed(units)}`).join(', '),
+  causes: (causes: readonly CauseOfMove[]): string =>
+    causes.map((part) => `${partWords[part.what]?.(part) ?? 'other figures'} ${signed(part.units)}`).join(', '),
   countsKept: ({ kept, of }: { kept: number; of: number }): string =>
     `Counts kept: ${quantity(kept)} of ${quantity(of)}`,
   countsKeptWhat: 'planned counts of late that came in time',
