@@ -81,7 +81,7 @@ function planOf(room: DemoRoom, item: DemoItem, index: number, meanPerDay: numbe
     overflowOf: null,
     meanPerDay,
     shape,
-    reorderPoint: small ? 24 : reorderPoint,
+    reorderPoint: small ? 38 : reorderPoint,
     parLevel: small ? story.smallShelf.capacity - pack + 4 : parLevel,
     capacity: small ? story.smallShelf.capacity : Math.ceil((parLevel * 1.15 + pack) / 5) * 5,
   }

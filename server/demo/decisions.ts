@@ -3,8 +3,7 @@ import { audit } from '../audit/audit.service.ts'
 import type { Clock } from '../clock.ts'
 import type { Db, Tx } from '../db/client.ts'
 import { inTransaction } from '../db/transaction.ts'
-import { insertExclusion } from '../policy/exclusions.repository.ts'
-import { insertChange } from '../policy/planned-changes.repository.ts'
+import { insertHistoryStart, insertPlannedChange } from './demo.repository.ts'
 import { marker } from './history-load.ts'
 import { readDirectory, type Directory } from './places.ts'
 import { demoZone } from './simulation/simulator.ts'
@@ -28,12 +27,10 @@ async function moveWard(tx: Tx, clock: Clock, known: Directory, by: number, toda
   const from = today.minus({ days: daysAgo }).set({ hour: 6 })
   for (const place of known.places.values()) {
     if (place.plan.room.code !== room) continue
-    await insertExclusion(tx, {
+    await insertHistoryStart(tx, {
       binId: place.binId,
       assignmentId: place.assignmentId,
-      kind: 'history-start',
       fromAt: from.toJSDate(),
-      toAt: null,
       reason,
       createdBy: by,
       createdAt: clock.now(),
@@ -60,7 +57,7 @@ async function plan(
 ): Promise<void> {
   const here = [...known.places.values()].filter((p) => p.plan.room.code === change.room)
   const itemIds = here.filter((p) => change.items.some((code) => code === p.plan.item.code)).map((p) => p.itemId)
-  const id = await insertChange(tx, {
+  const id = await insertPlannedChange(tx, {
     name: change.name,
     roomId: here[0]!.view.row.roomId,
     itemIds,

@@ -6,6 +6,7 @@ import type { Db, Reader, Tx } from '../db/client.ts'
 import { jobs } from '../jobs/jobs.tables.ts'
 import { users } from '../people/people.tables.ts'
 import { draftBins, orderLines, orderNumbers, orders } from '../replenishment/replenishment.tables.ts'
+import { exclusions, plannedChanges } from '../policy/policy.tables.ts'
 import { pinnedFloors, serviceLevelOverrides } from '../review/review.tables.ts'
 
 /** Statements of the demo hospital's loading that no capability needs one by one. */
@@ -155,4 +156,17 @@ export async function insertFloor(tx: Tx, row: typeof pinnedFloors.$inferInsert)
 /** Looks at single policies are not needed any more once all of them were looked at. */
 export async function dropPolicyJobs(db: Db, until: Date): Promise<void> {
   await db.delete(jobs).where(and(eq(jobs.kind, 'policy-bin'), lte(jobs.createdAt, until)))
+}
+
+// Decisions -------------------------------------------------------------------------------------------------------
+export async function insertHistoryStart(
+  tx: Tx,
+  row: Omit<typeof exclusions.$inferInsert, 'kind' | 'toAt'>,
+): Promise<void> {
+  await tx.insert(exclusions).values({ ...row, kind: 'history-start', toAt: null })
+}
+
+export async function insertPlannedChange(tx: Tx, row: typeof plannedChanges.$inferInsert): Promise<number> {
+  const [made] = await tx.insert(plannedChanges).values(row).$returningId()
+  return made!.id
 }

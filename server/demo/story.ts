@@ -20,7 +20,7 @@ export const story = {
   /** Two bags that look alike, side by side. */
   lookalikes: places('ALD-1', 'FL-002', 'FL-010'),
   /** Its aim asks for more than the shelf can take. */
-  smallShelf: { room: 'CED-1', item: 'FL-020', capacity: 40 },
+  smallShelf: { room: 'CED-1', item: 'FL-020', capacity: 60 },
   twiceAMonth: { room: 'ELD-1', item: 'VA-120' },
   /** Used rarely, and then many at once. */
   lumpy: { room: 'ELD-1', item: 'DR-070' },

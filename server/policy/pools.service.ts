@@ -163,12 +163,16 @@ export async function setPoolWard(
 export async function readPool(
   db: Reader,
   bin: { itemId: number | null; wardId: number; wardKind: string },
-  facts: PolicyFacts['pool'],
+  learnt: PolicyFacts | null,
 ): Promise<BinPolicy['pool']> {
+  const facts = learnt?.pool ?? null
   const pool = bin.itemId === null || facts === null ? null : await repo.findPool(db, bin.itemId, bin.wardKind)
   if (!pool || !facts) return null
   const names = new Map((await repo.listWardNames(db)).map((w) => [String(w.id), w.name]))
   const wards = groupBy(pool.members as KeptMember[], (m) => Number(m.wardId))
+  // A place that began to count after the pool was made stands beside it with what it has.
+  if (!wards.has(bin.wardId) && learnt?.member)
+    wards.set(bin.wardId, [{ key: '', wardId: String(bin.wardId), ...learnt.member, leftOut: false }])
   return {
     basis: facts.basis,
     ownShare: facts.ownShare,

@@ -71,7 +71,7 @@ export async function readBinPolicy(db: Reader, clock: Clock, actor: Actor, binI
     useStoppedSince: facts?.useStoppedSince ?? null,
     questions: facts?.questions ?? [],
     exclusions: await readExclusions(db, actor, binId, view.row.assignmentId),
-    pool: await readPool(db, view.row, facts?.pool ?? null),
+    pool: await readPool(db, view.row, facts),
     changes: facts?.changes ?? [],
     leadTimes: facts?.leadTimes ?? null,
     history: (await policyHistory(db, binId, 20)).map((h) => ({

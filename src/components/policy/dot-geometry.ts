@@ -24,6 +24,8 @@ const TALLEST = 150
 const BEYOND = { r: 3.6, pitch: 8 }
 /** The words right of the line need this much. */
 const WORDS = 92
+/** … and those of the textbook mark this much. */
+const TEXTBOOK_WORDS = 136
 
 export function dotGeometry(
   picture: DemandPicture,
@@ -83,5 +85,11 @@ function ticksOf(highest: number, x: (units: number) => number): DotGeometry['ti
   }))
 }
 
-const textbookAt = (at: number, line: number, total: number): DotGeometry['textbook'] =>
-  at > line || at < total / 2 ? { x: at, wordsX: at + 6, anchor: 'start' } : { x: at, wordsX: at - 6, anchor: 'end' }
+/** Words beside the mark, clear of the line and of the picture's edges where there is room for them. */
+function textbookAt(at: number, line: number, total: number): DotGeometry['textbook'] {
+  const fitsLeft = at >= TEXTBOOK_WORDS && (at < line || at - TEXTBOOK_WORDS > line)
+  const fitsRight = at + TEXTBOOK_WORDS <= (at < line ? line : total)
+  return fitsRight && !(fitsLeft && at < line)
+    ? { x: at, wordsX: at + 6, anchor: 'start' }
+    : { x: at, wordsX: at - 6, anchor: 'end' }
+}

@@ -22,22 +22,29 @@ const causeWords: Record<string, string> = {
   'like-wards': 'what like wards tell changed',
 }
 
-const otherThan = (part: CauseOfMove, words: (days: number) => string, plain: string): string =>
-  part.from === undefined || part.to === undefined ? plain : `${words(part.to)} instead of ${words(part.from)}`
+/** "counts every 3 days instead of daily": the second time only what differs. */
+const insteadOf = (
+  part: CauseOfMove,
+  now: (days: number) => string,
+  before: (days: number) => string,
+  plain: string,
+): string =>
+  part.from === undefined || part.to === undefined ? plain : `${now(part.to)} instead of ${before(part.from)}`
 
-/** Parts of a move, before their units: "use +3, counts every 3 days instead of every day +4". */
+const everyDays = (days: number): string => (decimal(days) === '1' ? 'daily' : `every ${dayCount(days)}`)
+
+/** Parts of a move, before their units: "use +3, counts every 3 days instead of daily +4". */
 const partWords: Record<string, (part: CauseOfMove) => string> = {
   use: () => 'use',
-  rhythm: (part) =>
-    otherThan(part, (days) => (days === 1 ? 'counts every day' : `counts every ${dayCount(days)}`), 'counting rhythm'),
-  days: (part) => otherThan(part, (days) => `${dayCount(days)} to cover`, 'days to cover'),
+  rhythm: (part) => insteadOf(part, (days) => `counts ${everyDays(days)}`, everyDays, 'counting rhythm'),
+  days: (part) => insteadOf(part, (days) => `${dayCount(days)} to cover`, dayCount, 'days to cover'),
   weekdays: () => 'weekdays in the days to cover',
   delivery: () => 'deliveries',
   'planned-change': () => 'planned change',
   'like-wards': () => 'like wards',
   aim: () => 'the aim',
   limits: () => 'shelf, pack or fixed minimum',
-  entered: () => 'entered by a person',
+  entered: () => 'worked out instead of entered',
 }
 
 const waitWords: Record<string, string> = {

@@ -165,11 +165,14 @@ describe('what moved it, and what is asked', () => {
   it('splits a move into its parts', () => {
     const causes = [
       { what: 'use', units: 3 },
-      { what: 'rhythm', units: 4 },
+      { what: 'rhythm', units: 4, from: 1, to: 3 },
       { what: 'limits', units: -1 },
     ]
-    expect(policyWords.causes(causes, aBin('1', { countEveryDays: 3 }))).toBe(
-      'use +3, counts every 3 days +4, shelf, pack or fixed minimum −1',
+    expect(policyWords.causes(causes)).toBe(
+      'use +3, counts every 3 days instead of daily +4, shelf, pack or fixed minimum −1',
+    )
+    expect(policyWords.causes([{ what: 'days', units: -5, from: 10.2, to: 8 }])).toBe(
+      '8 days to cover instead of 10.2 days −5',
     )
   })
 
