@@ -77,6 +77,8 @@ const settings = [
 
 for (const setting of settings) {
   test(`every page can be read and used: ${setting.name}`, async () => {
+    // Some thirty pages, each looked through for faults of access.
+    test.setTimeout(300_000)
     for (const [role, paths] of Object.entries(await pathsOf())) {
       const context = await launch(setting)
       const page = pageOf(context)

@@ -85,7 +85,7 @@ async function resultOf(binId: number): Promise<PolicyResult> {
 describe('the demo hospital', () => {
   it('stands with its wards, rooms, items and places', async () => {
     expect((await listWards(database.db, list)).total).toBeGreaterThanOrEqual(5)
-    expect((await listRooms(database.db, clock, everybody, list)).total).toBe(8)
+    expect((await listRooms(database.db, clock, everybody, list)).total).toBe(12)
     expect((await listItems(database.db, list)).total).toBeGreaterThanOrEqual(180)
     expect((await listSuppliers(database.db, list)).total).toBe(4)
     expect(views.length).toBeGreaterThanOrEqual(300)
