@@ -1,3 +1,4 @@
+import type { TwoBinSize } from '#shared/policy/two-bin.ts'
 import type { Bin } from '#shared/contracts/bins.ts'
 import type { BinPolicy } from '#shared/contracts/policy.ts'
 import type { Computed, WhyPolicy } from '#src/components/policy/why-policy.ts'
@@ -180,6 +181,18 @@ function gapWords(gap: NonNullable<Bin['gap']>, at: Moment): string {
   return `Around “${gap.name}” deliveries stand still: have ${quantity(gap.level)} here by the order of ${by}.`
 }
 
+/** Sizes of a place kept as two bins; the front one's emptying is the order. */
+function twoBinWords(size: TwoBinSize, bin: Bin): string {
+  const sizes = size.equal
+    ? `${quantity(size.perBin)} in each`
+    : `${quantity(size.front)} in front and ${quantity(size.reserve)} in reserve`
+  const room =
+    size.fits || bin.capacity === null
+      ? ''
+      : ` Together they need room for ${quantity(size.total)}; ${quantity(bin.capacity)} fit.`
+  return `As two bins it works out at ${sizes}, ordered when the front one is empty.${room}`
+}
+
 // Odds ------------------------------------------------------------------------------------------------------------
 
 /**
@@ -204,6 +217,7 @@ export const whyWords = {
   title: (point: number | null): string => (point === null ? 'Why no reorder point?' : `Why ${quantity(point)}?`),
   plain,
   bearing,
+  twoBin: twoBinWords,
   odds: oddsWords,
   onPhone: 'Worked out on this phone from the figures it keeps; dates of deliveries need the record.',
 } as const

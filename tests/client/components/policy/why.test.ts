@@ -162,6 +162,16 @@ describe('why, without a network', () => {
 })
 
 describe('what moved it, and what is asked', () => {
+  it('gives the sizes of two bins, and says when the shelf is too small for both', () => {
+    const size = { perBin: 40, front: 40, reserve: 40, total: 80, equal: true, fits: false }
+    expect(whyWords.twoBin(size, aBin('1', { kind: 'two-bin', capacity: 60 }))).toBe(
+      'As two bins it works out at 40 in each, ordered when the front one is empty. Together they need room for 80; 60 fit.',
+    )
+    expect(whyWords.twoBin({ ...size, front: 50, total: 90, equal: false, fits: true }, aBin('1'))).toBe(
+      'As two bins it works out at 50 in front and 40 in reserve, ordered when the front one is empty.',
+    )
+  })
+
   it('splits a move into its parts', () => {
     const causes = [
       { what: 'use', units: 3 },
