@@ -119,6 +119,38 @@ test('a coordinator proposes an aim, the second reviewer approves it, and the po
   await record.api.dispose()
 })
 
+test('a reviewer says what an unusual stretch was, and takes it back', async () => {
+  const record = await recordAs('coordinator')
+  const asked = (await (await record.api.get('/api/v1/review?show=asked')).json()) as { items: { id: string }[] }
+  const binId = asked.items[0]!.id
+  const policy = async (): Promise<BinPolicy> =>
+    (await (await record.api.get(`/api/v1/bins/${binId}/policy`)).json()) as BinPolicy
+  const before = await policy()
+  const context = await launch({ viewport: desk })
+  const page = pageOf(context)
+  await signIn(page, 'reviewer')
+  await page.goto(`/bins/${binId}`)
+  await page.getByRole('button', { name: 'A one-off event' }).first().click()
+  const leaveOut = page.getByRole('button', { name: 'Leave it out' })
+  await leaveOut.click()
+  await expect(page.getByText('Say why, in a sentence.').first()).toBeVisible()
+  await page.getByLabel('Reason').fill('A neighbouring ward was moved here for a week')
+  await leaveOut.click()
+  await expect(page.getByText(/^Left out\./)).toBeVisible()
+  const after = await policy()
+  expect(after.questions).toHaveLength(before.questions.length - 1)
+  expect(after.exclusions.map((e) => e.kind)).toContain('excluded')
+  expect(after.intervals.filter((i) => i.why === 'excluded').length).toBeGreaterThan(0)
+
+  await page.getByRole('button', { name: /^Let it count again/ }).click()
+  await page.getByLabel('Reason').fill('It may come again')
+  await page.getByRole('button', { name: 'Let it count again', exact: true }).last().click()
+  await expect(page.getByText(/^Ended\./)).toBeVisible()
+  expect((await policy()).computed!.reorderPoint).toBe(before.computed!.reorderPoint)
+  await context.close()
+  await record.api.dispose()
+})
+
 /** Leaves `n` counts on the phone without a network. */
 async function countOffline(page: Page, n: number): Promise<void> {
   for (let done = 1; done <= n; done += 1) {
