@@ -85,11 +85,10 @@ function ticksOf(highest: number, x: (units: number) => number): DotGeometry['ti
   }))
 }
 
-/** Words beside the mark, clear of the line and of the picture's edges where there is room for them. */
+/** Words above the mark, clear of the line and inside the picture where there is room for them. */
 function textbookAt(at: number, line: number, total: number): DotGeometry['textbook'] {
-  const fitsLeft = at >= TEXTBOOK_WORDS && (at < line || at - TEXTBOOK_WORDS > line)
-  const fitsRight = at + TEXTBOOK_WORDS <= (at < line ? line : total)
-  return fitsRight && !(fitsLeft && at < line)
-    ? { x: at, wordsX: at + 6, anchor: 'start' }
-    : { x: at, wordsX: at - 6, anchor: 'end' }
+  if (at < line) return { x: at, wordsX: Math.min(line - 8, Math.max(TEXTBOOK_WORDS, at + 6)), anchor: 'end' }
+  return at + TEXTBOOK_WORDS <= total
+    ? { x: at, wordsX: at, anchor: 'start' }
+    : { x: at, wordsX: total, anchor: 'end' }
 }
