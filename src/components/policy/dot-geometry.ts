@@ -88,7 +88,5 @@ function ticksOf(highest: number, x: (units: number) => number): DotGeometry['ti
 /** Words above the mark, clear of the line and inside the picture where there is room for them. */
 function textbookAt(at: number, line: number, total: number): DotGeometry['textbook'] {
   if (at < line) return { x: at, wordsX: Math.min(line - 8, Math.max(TEXTBOOK_WORDS, at + 6)), anchor: 'end' }
-  return at + TEXTBOOK_WORDS <= total
-    ? { x: at, wordsX: at, anchor: 'start' }
-    : { x: at, wordsX: total, anchor: 'end' }
+  return at + TEXTBOOK_WORDS <= total ? { x: at, wordsX: at, anchor: 'start' } : { x: at, wordsX: total, anchor: 'end' }
 }
