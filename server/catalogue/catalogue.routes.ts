@@ -1,5 +1,6 @@
 import * as k from '#shared/contracts/calendars.ts'
 import * as c from '#shared/contracts/catalogue.ts'
+import * as levels from '#shared/contracts/room-levels.ts'
 import * as h from '#shared/contracts/hospital.ts'
 import { listBins, momentOf, viewBin } from '../counts/bin-view.service.ts'
 import type { Routes } from '../http/endpoint.ts'
@@ -26,10 +27,10 @@ export function catalogueRoutes(routes: Routes): void {
     places.updateRoom(tx, clock, actor, Number(params.id), body),
   )
 
-  routes.read(c.readRoomLevels, ({ tx, clock, actor, params }) =>
+  routes.read(levels.readRoomLevels, ({ tx, clock, actor, params }) =>
     roomLevels.readRoomLevels(tx, clock, actor, Number(params.id)),
   )
-  routes.write(c.setRoomMode, ({ tx, clock, actor, params, body }) =>
+  routes.write(levels.setRoomMode, ({ tx, clock, actor, params, body }) =>
     roomLevels.setRoomMode(tx, clock, actor, Number(params.id), body),
   )
 

@@ -1,5 +1,5 @@
 import type { Bin } from '#shared/contracts/bins.ts'
-import type { RoomLevelRow, RoomLevels } from '#shared/contracts/catalogue.ts'
+import type { RoomLevelRow, RoomLevels } from '#shared/contracts/room-levels.ts'
 import { problem } from '#shared/contracts/problems.ts'
 import type { PolicyResult } from '#shared/policy/policy-result.ts'
 import { audit } from '../audit/audit.service.ts'

@@ -1,5 +1,6 @@
 import type { BinPolicy } from '#shared/contracts/policy.ts'
 import { problem } from '#shared/contracts/problems.ts'
+import { usualActivity } from '#shared/demand/activity.ts'
 import { seenFactor } from '#shared/demand/seen-factor.ts'
 import { weekdayProfile } from '#shared/demand/weekday-profile.ts'
 import { poolPrior, type PoolMember } from '#shared/policy/pool.ts'
@@ -52,7 +53,7 @@ async function freezeProfiles(db: Db, clock: Clock): Promise<void> {
       bins,
       changes: bearing.map((c) => activityChange(c, timeZone, 1)),
     })
-    const before = known.get(wardId)?.weights ?? [1, 1, 1, 1, 1, 1, 1]
+    const before = known.get(wardId)?.weights ?? usualActivity(timeZone).weekday
     if (weights.every((w, i) => Math.abs(w - before[i]!) < worthMoving)) continue
     await inTransaction(db, (tx) =>
       repo.replaceProfile(tx, { wardId, weights: [...weights], intervals: rows.length, madeAt: clock.now() }),

@@ -1,6 +1,6 @@
 import type { HolidayGap } from '#shared/calendar/holiday-gap.ts'
 import type { OrderCalendar } from '#shared/calendar/order-calendar.ts'
-import { exposureOf, type Exposure } from '#shared/demand/activity.ts'
+import { exposureOf, usualActivity, type Exposure } from '#shared/demand/activity.ts'
 import type { Hospital } from '#shared/contracts/hospital.ts'
 import { gapOf } from '#shared/replenishment/gap-need.ts'
 import { closedDays, type ClosedDays } from '../catalogue/calendar.service.ts'
@@ -65,8 +65,9 @@ export async function readWorld(db: Reader, wide = false): Promise<World> {
         const shared = isCases(change) ? await sharersOf(reader, sharers, change, view.row.itemId!) : 1
         own.push(activityChange(change, hospital.timeZone, shared))
       }
-      const weekday = profiles.get(view.row.wardId) ?? everyDayAlike
-      const made = exposureOf({ zone: hospital.timeZone, weekday, changes: own })
+      const usual = usualActivity(hospital.timeZone)
+      const weekday = profiles.get(view.row.wardId) ?? usual.weekday
+      const made = exposureOf({ ...usual, weekday, changes: own })
       exposures.set(key, made)
       return made
     },
@@ -93,7 +94,6 @@ export async function readWorld(db: Reader, wide = false): Promise<World> {
 
 /** A gap looked for this lately is the same gap. */
 const gapFreshMs = 60_000
-const everyDayAlike = [1, 1, 1, 1, 1, 1, 1]
 const poolKey = (itemId: number, wardKind: string): string => `${itemId} ${wardKind}`
 const isCases = (change: PlannedChangeRow): boolean => change.kind === 'cases'
 

@@ -1,6 +1,5 @@
 import type { PolicyInput } from '#shared/policy/policy-input.ts'
 import type { DemandInterval } from './demand-events.ts'
-import { mergeNegatives } from './merge-negatives.ts'
 
 type PolicyInterval = NonNullable<PolicyInput['intervals']>[number]
 
@@ -8,17 +7,13 @@ type PolicyInterval = NonNullable<PolicyInput['intervals']>[number]
 const worthCounting = 0.02
 
 /**
- * The intervals a policy learns from, oldest first: the used ones, negative ones merged (`mergeNegatives`).
+ * The intervals a policy learns from, oldest first, of intervals whose negatives are merged (`mergeNegatives`).
  *
  * Intervals left out for what they are go along with weight 0, so that the result can say how many there were; those
  * that are merely too old, or from before the history start, do not.
  *
  * @returns empty when no interval may be used
  */
-export const policyIntervals = (intervals: readonly DemandInterval[]): PolicyInterval[] =>
-  asPolicyIntervals(mergeNegatives(intervals).intervals)
-
-/** The same of intervals already merged. */
 export function asPolicyIntervals(merged: readonly DemandInterval[]): PolicyInterval[] {
   if (!merged.some((i) => i.used)) return []
   return merged

@@ -1,7 +1,8 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import { parseShelfCode } from '#shared/barcode/shelf-code.ts'
 import type { Bin } from '#shared/contracts/bins.ts'
-import type { Item, Room, RoomLevels } from '#shared/contracts/catalogue.ts'
+import type { Item, Room } from '#shared/contracts/catalogue.ts'
+import type { RoomLevels } from '#shared/contracts/room-levels.ts'
 import { startTestApp, type Caller, type TestApp } from '../support/app.ts'
 import { makeBin, makeItem, makeRoom, makeSupplier, operation, sync } from '../support/factories.ts'
 

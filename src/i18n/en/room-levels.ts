@@ -1,4 +1,5 @@
-import type { RoomLevelRow, RoomLevels, RoomMode } from '#shared/contracts/catalogue.ts'
+import type { RoomMode } from '#shared/contracts/catalogue.ts'
+import type { RoomLevelRow, RoomLevels } from '#shared/contracts/room-levels.ts'
 import { counted, quantity, signed } from './format.ts'
 
 interface Mode {

@@ -1,8 +1,12 @@
 import { describe, expect, it } from 'vitest'
 import { countRhythm } from '#shared/demand/count-rhythm.ts'
 import { forget, halfLifeDays } from '#shared/demand/forget.ts'
-import { policyIntervals, wastageRate } from '#shared/demand/policy-intervals.ts'
+import type { DemandInterval } from '#shared/demand/demand-events.ts'
+import { mergeNegatives } from '#shared/demand/merge-negatives.ts'
+import { asPolicyIntervals, wastageRate } from '#shared/demand/policy-intervals.ts'
 import { weeks as chain } from './weeks.ts'
+
+const policyIntervals = (intervals: readonly DemandInterval[]) => asPolicyIntervals(mergeNegatives(intervals).intervals)
 
 describe('negative use', () => {
   it('is merged with the neighbour that holds the other half of the miscount', () => {
