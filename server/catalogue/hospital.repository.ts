@@ -16,3 +16,8 @@ export async function insertHospital(tx: Tx, row: typeof hospitals.$inferInsert)
 export async function updateHospitalRow(tx: Tx, set: Partial<HospitalRow>): Promise<void> {
   if (Object.keys(set).length) await tx.update(hospitals).set(set).where(eq(hospitals.id, 1))
 }
+
+/** Lets one transaction at a time decide something about the whole hospital. */
+export async function lockHospital(tx: Tx): Promise<void> {
+  await tx.select({ id: hospitals.id }).from(hospitals).for('update')
+}

@@ -8,7 +8,7 @@ import type { Actor } from '../http/context.ts'
 import { enqueue } from '../jobs/jobs.service.ts'
 import { classLevels, setClassLevels } from '../review/classes.service.ts'
 import { checkCalendar } from './calendars.service.ts'
-import { findHospital, insertHospital, updateHospitalRow } from './hospital.repository.ts'
+import { findHospital, insertHospital, lockHospital, updateHospitalRow } from './hospital.repository.ts'
 import { checkReach } from './reach.service.ts'
 
 /** The organisation's settings. @throws {Problem} not-ready before they are made */
@@ -104,3 +104,6 @@ function check(after: Hospital, change: Partial<Hospital>): void {
     }
   }
 }
+
+/** Before a decision that two people must not make twice. */
+export const oneAtATime = lockHospital

@@ -3,6 +3,7 @@ import { audit } from '../audit/audit.service.ts'
 import { readHospital } from '../catalogue/hospital.service.ts'
 import type { Clock } from '../clock.ts'
 import { momentOf, viewBin } from '../counts/bin-view.service.ts'
+import { lockBins } from '../counts/levels.service.ts'
 import type { Reader, Tx } from '../db/client.ts'
 import type { Actor } from '../http/context.ts'
 import { peopleNames } from '../people/people.service.ts'
@@ -29,6 +30,11 @@ export async function addExclusion(tx: Tx, clock: Clock, actor: Actor, binId: nu
     throw problem('not-found', 'An overflow place follows its main place. Leave the stretch out there.')
   const now = clock.now()
   const span = checkSpan(input, now)
+  // Under the lock of the bin two people, or one who presses twice, cannot say the same at once.
+  await lockBins(tx, [binId])
+  const standing = await repo.listExclusions(tx, binId, view.row.assignmentId)
+  if (standing.some((e) => isSame(e, input.kind, span)))
+    throw problem('already-decided', 'This has been said of the same stretch already.')
   const id = await repo.insertExclusion(tx, {
     binId,
     assignmentId: view.row.assignmentId,
@@ -50,6 +56,9 @@ export async function addExclusion(tx: Tx, clock: Clock, actor: Actor, binId: nu
   })
   await recompute(tx, clock, binId, 'exclusion')
 }
+
+const isSame = (row: repo.ExclusionRow, kind: Fields['kind'], span: { from: Date; to: Date | null }): boolean =>
+  row.kind === kind && row.fromAt.getTime() === span.from.getTime() && row.toAt?.getTime() === span.to?.getTime()
 
 function checkSpan(input: Fields, now: Date): { from: Date; to: Date | null } {
   const from = new Date(input.from)

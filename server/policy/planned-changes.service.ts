@@ -4,7 +4,7 @@ import { lastYearFactor } from '#shared/demand/seen-factor.ts'
 import type { LastYear, PlannedChange, PlannedChangeKind } from '#shared/contracts/planned-changes.ts'
 import { fieldProblem, problem } from '#shared/contracts/problems.ts'
 import { audit } from '../audit/audit.service.ts'
-import { readHospital } from '../catalogue/hospital.service.ts'
+import { oneAtATime, readHospital } from '../catalogue/hospital.service.ts'
 import type { Clock } from '../clock.ts'
 import { pageOf } from '../counts/bin-view.service.ts'
 import { touchBins } from '../counts/levels.service.ts'
@@ -131,6 +131,9 @@ export async function createChange(tx: Tx, clock: Clock, actor: Actor, fields: C
   const scope = { wardId, roomId, itemIds }
   if (fields.kind !== 'closed' && (await repo.listScopeBins(tx, scope)).length === 0)
     throw fieldProblem('/itemIds', 'no place there holds one of these items')
+  await oneAtATime(tx)
+  if ((await repo.listStanding(tx)).some((row) => isSame(row, scope, fields)))
+    throw problem('already-exists', 'The same change is planned already. Change that one instead.')
   const id = await repo.insertChange(tx, {
     ...scope,
     name: fields.name,
@@ -155,6 +158,16 @@ export async function createChange(tx: Tx, clock: Clock, actor: Actor, fields: C
   await askAgain(tx, clock, scope)
   return readChange(tx, clock, actor, id)
 }
+
+/** Twice the same factor would be its square. */
+const isSame = (row: repo.PlannedChangeRow, scope: repo.Scope, fields: ChangeFields): boolean =>
+  row.roomId === scope.roomId &&
+  row.wardId === scope.wardId &&
+  row.kind === fields.kind &&
+  row.name === fields.name &&
+  row.startsOn === fields.startsOn &&
+  row.endsOn === fields.endsOn &&
+  JSON.stringify([...row.itemIds].sort()) === JSON.stringify([...scope.itemIds].sort())
 
 const figuresOf = (kind: PlannedChangeKind, fields: Pick<ChangeFields, 'factor' | 'unitsPerCase' | 'casesPerDay'>) => ({
   factor: kind === 'factor' ? fields.factor : null,

@@ -92,6 +92,8 @@ describe('a stretch unlike the rest', () => {
     }
     const made = await coordinator.post(path, good)
     expect(made.status, made.text).toBe(201)
+    const again = await coordinator.post(path, good)
+    expect([again.status, again.body.code]).toEqual([409, 'already-decided'])
     const after = made.body as BinPolicy
     expect(after.questions).toEqual([])
     expect(after.intervals.find((i) => i.quantity === 62)).toMatchObject({ used: false, why: 'excluded' })
@@ -182,6 +184,13 @@ describe('a planned change', () => {
     const coordinator = await app.as('coordinator')
     const far = await coordinator.post('/planned-changes', change({ startsOn: dateIn(40) }))
     expect(far.body).toMatchObject({ state: 'ahead', bins: 1, placeName: room.name, seen: null })
+    const twice = await Promise.all(
+      [1, 2].map(() => coordinator.post('/planned-changes', change({ startsOn: dateIn(40) }))),
+    )
+    expect(twice.map((r) => [r.status, r.body.code])).toEqual([
+      [409, 'already-exists'],
+      [409, 'already-exists'],
+    ])
     await app.runJobs()
     expect((await policyOf(bin)).reorderPoint).toBe(before.reorderPoint)
     const near = await coordinator.patch(`/planned-changes/${far.body.id}`, { startsOn: dateIn(2) })
